@@ -1,0 +1,15 @@
+//! Which edge will the cutter really leave?
+//!
+//! A moving cutter is a family of circles. `sweptedge` computes the envelope of that family, the edge
+//! that is really machined, as exact lines and arcs, and compares it with the intended part.
+
+pub mod compare;
+pub mod cutter;
+pub mod envelope;
+pub mod findings;
+pub mod geometry;
+pub mod input;
+pub mod part;
+pub mod program;
+pub mod tolerance;
+pub mod view;

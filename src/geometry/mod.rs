@@ -8,6 +8,7 @@
 
 mod arc;
 mod contour;
+mod crossing;
 mod index;
 mod line;
 mod nearest;
@@ -16,6 +17,7 @@ mod segment;
 
 pub use arc::{Arc, ArcError, Turn};
 pub use contour::{Contour, ContourError};
+pub use crossing::{Crossing, Few, Meeting, MeetingKind, Overlap, crossing};
 pub use index::BoxIndex;
 pub use kurbo::{Affine, Point, Rect, Vec2};
 pub use line::{Line, Side, orientation};

@@ -1,0 +1,232 @@
+//! Raw edge: what each disc would leave if it were alone.
+//!
+//! ```text
+//!        <---- left offset, travelled backwards ----
+//!      .'                                            '.     one closed curve round each unbroken
+//!   cap (      ------- path of the centre ------>      ) cap   chain of moves, material on its left
+//!      '.                                            .'
+//!        ----- right offset, travelled forwards ---->
+//! ```
+//!
+//! At every joint the offsets of two moves are connected by an arc about the joint. On the outer side
+//! of a turn that arc is edge; on the inner side it lies under both moves and is covered. It is kept
+//! all the same, for then the raw edge is closed by construction: which pieces follow one another is
+//! known by number, never by looking for near ends.
+
+use std::f64::consts::PI;
+
+use crate::geometry::{Arc, Offset, Point, Segment, Vec2};
+use crate::view::DiscFamily;
+
+/// A piece of raw edge.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(crate) struct Raw {
+    /// Where it runs.
+    pub segment: Segment,
+    /// The move that makes it, by position in the family.
+    pub source: u32,
+    /// Numbers of the joints at its start and end.
+    pub joints: [u32; 2],
+    /// Where it lies seen from the centre of the disc that makes it.
+    pub outward: Outward,
+}
+
+/// In which direction the material ends at a piece of raw edge.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub(crate) enum Outward {
+    /// To the right of travel.
+    Right,
+    /// To the left: arcs that run backwards, as the offset of an arc tighter than the cutter does.
+    Left,
+}
+
+impl Raw {
+    /// Unit vector out of the material at parameter `t`.
+    pub fn outward_at(&self, t: f64) -> Vec2 {
+        let left = self.segment.left_normal_at(t);
+        match self.outward {
+            Outward::Right => -left,
+            Outward::Left => left,
+        }
+    }
+}
+
+/// Raw edge of a family: closed curves, each unbroken chain of moves by itself.
+#[derive(Clone, Debug, Default)]
+pub(crate) struct RawEdge {
+    pub pieces: Vec<Raw>,
+    /// Place of each joint.
+    pub joints: Vec<Point>,
+}
+
+impl RawEdge {
+    /// Raw edge of `family`. Pieces shorter than `coincidence` are left out: their ends become one.
+    pub fn new(family: &DiscFamily, coincidence: f64) -> Self {
+        let mut edge = Self::default();
+        let mut chain: Vec<(u32, Segment)> = Vec::new();
+        let mut radius = 0.0;
+        for (i, m) in (0u32..).zip(&family.moves) {
+            let follows = chain.last().is_some_and(|(_, s)| s.end() == m.segment.start())
+                && m.radius.to_bits() == f64::to_bits(radius);
+            if !follows {
+                edge.chain(&chain, radius, coincidence);
+                chain.clear();
+                radius = m.radius;
+            }
+            let point = m.segment.length() <= coincidence;
+            match chain.last_mut() {
+                // A stop on the way adds nothing; a longer move takes the place of a stop.
+                Some(_) if point && m.segment.start() == m.segment.end() => {}
+                Some(last) if last.1.start() == last.1.end() && !is_circle(&last.1) => *last = (i, m.segment),
+                _ => chain.push((i, m.segment)),
+            }
+        }
+        edge.chain(&chain, radius, coincidence);
+        edge
+    }
+
+    /// Adds the closed curve round one chain (two of them round a closed chain).
+    fn chain(&mut self, chain: &[(u32, Segment)], radius: f64, coincidence: f64) {
+        let (Some(&(first, s)), Some(&(last, e))) = (chain.first(), chain.last()) else { return };
+        if chain.len() == 1 && s.start() == s.end() && !is_circle(&s) {
+            self.disc(first, s.start(), radius);
+            return;
+        }
+        let closed = s.start() == e.end();
+        let mut pen = Pen::new(self, radius, coincidence);
+        for (k, &(i, m)) in chain.iter().enumerate() {
+            pen.offset(i, &m, -radius);
+            match chain.get(k + 1) {
+                Some((_, next)) => {
+                    pen.corner(i, m.end(), m.tangent_at(1.0), next.tangent_at(0.0), Flank::Right)
+                }
+                None if closed => pen.corner(i, m.end(), m.tangent_at(1.0), s.tangent_at(0.0), Flank::Right),
+                None => pen.cap(last, e.end(), e.tangent_at(1.0)),
+            }
+        }
+        if closed {
+            pen.close();
+            pen = Pen::new(self, radius, coincidence);
+        }
+        for (k, &(i, m)) in chain.iter().enumerate().rev() {
+            pen.offset(i, &m, radius);
+            let before = if k > 0 { chain.get(k - 1) } else { None };
+            match before {
+                Some((_, b)) => pen.corner(i, m.start(), b.tangent_at(1.0), m.tangent_at(0.0), Flank::Left),
+                None if closed => pen.corner(i, m.start(), e.tangent_at(1.0), m.tangent_at(0.0), Flank::Left),
+                None => pen.cap(first, s.start(), -s.tangent_at(0.0)),
+            }
+        }
+        pen.close();
+    }
+
+    /// A disc that stands still.
+    fn disc(&mut self, source: u32, center: Point, radius: f64) {
+        let (a, b) = (center + Vec2::new(radius, 0.0), center - Vec2::new(radius, 0.0));
+        let first = self.joints.len() as u32;
+        self.joints.extend([a, b]);
+        for (from, to, joints) in [(a, b, [first, first + 1]), (b, a, [first + 1, first])] {
+            let segment = Segment::Arc(Arc::from_parts(center, radius, from, to, PI));
+            self.pieces.push(Raw { segment, source, joints, outward: Outward::Right });
+        }
+    }
+}
+
+/// A closed segment that goes round, as against a line that is a point.
+fn is_circle(segment: &Segment) -> bool {
+    matches!(segment, Segment::Arc(_))
+}
+
+/// Which offset a corner connects.
+#[derive(Clone, Copy, PartialEq, Eq)]
+enum Flank {
+    Right,
+    Left,
+}
+
+/// Draws one closed curve, piece after piece, handing out the numbers of its joints.
+struct Pen<'a> {
+    edge: &'a mut RawEdge,
+    radius: f64,
+    coincidence: f64,
+    first_piece: usize,
+    first_joint: u32,
+}
+
+impl<'a> Pen<'a> {
+    fn new(edge: &'a mut RawEdge, radius: f64, coincidence: f64) -> Self {
+        let (first_piece, first_joint) = (edge.pieces.len(), edge.joints.len() as u32);
+        Self { edge, radius, coincidence, first_piece, first_joint }
+    }
+
+    /// Appends a piece; too short a one is dropped, the next one then starts at the same joint.
+    fn push(&mut self, segment: Segment, source: u32, outward: Outward) {
+        if segment.length() <= self.coincidence {
+            return;
+        }
+        if self.edge.pieces.len() == self.first_piece {
+            self.edge.joints.push(segment.start());
+        }
+        let from = self.edge.joints.len() as u32 - 1;
+        self.edge.joints.push(segment.end());
+        self.edge.pieces.push(Raw { segment, source, joints: [from, from + 1], outward });
+    }
+
+    /// The parallel of a move at `left` to its left, travelled forwards on the right side and
+    /// backwards on the left, so that material is on the left of the edge.
+    fn offset(&mut self, source: u32, m: &Segment, left: f64) {
+        let turned = |s: Segment| if left > 0.0 { s.reversed() } else { s };
+        match (m.offset(left), m) {
+            (Offset::Segment(s), _) => self.push(turned(s), source, Outward::Right),
+            (Offset::Collapsed { center }, Segment::Arc(a)) => {
+                // The parallel beyond the centre: covered but where it is shallow, and it keeps the
+                // curve closed.
+                let beyond = self.radius - a.radius();
+                if beyond <= self.coincidence {
+                    return;
+                }
+                let at = |p: Point| {
+                    let v = center - p;
+                    center + v * (beyond / v.hypot())
+                };
+                let back = Arc::from_parts(center, beyond, at(a.start()), at(a.end()), a.sweep());
+                self.push(turned(Segment::Arc(back)), source, Outward::Left);
+            }
+            (Offset::Collapsed { .. }, Segment::Line(_)) => {}
+        }
+    }
+
+    /// The arc about joint `at` between the parallels of two moves with tangents `before`, `after`.
+    fn corner(&mut self, source: u32, at: Point, before: Vec2, after: Vec2, flank: Flank) {
+        let mut turn = before.cross(after).atan2(before.dot(after));
+        // A path that turns straight back goes round its end on the right flank.
+        if turn <= -PI {
+            turn = PI;
+        }
+        let right = |d: Vec2| Vec2::new(d.y, -d.x) * self.radius;
+        let (from, to, sweep) = match flank {
+            Flank::Right => (at + right(before), at + right(after), turn),
+            Flank::Left => (at - right(after), at - right(before), -turn),
+        };
+        let outward = if sweep < 0.0 { Outward::Left } else { Outward::Right };
+        let arc = Arc::from_parts(at, self.radius, from, to, sweep);
+        self.push(Segment::Arc(arc), source, outward);
+    }
+
+    /// The half circle round the end of a chain that points along `ahead`.
+    fn cap(&mut self, source: u32, at: Point, ahead: Vec2) {
+        let right = Vec2::new(ahead.y, -ahead.x) * self.radius;
+        let arc = Arc::from_parts(at, self.radius, at + right, at - right, PI);
+        self.push(Segment::Arc(arc), source, Outward::Right);
+    }
+
+    /// Lets the last piece end at the joint where the first one starts.
+    fn close(self) {
+        if self.edge.pieces.len() > self.first_piece {
+            self.edge.joints.pop();
+            if let Some(last) = self.edge.pieces.last_mut() {
+                last.joints[1] = self.first_joint;
+            }
+        }
+    }
+}

@@ -1,0 +1,133 @@
+//! Independent judge of swept regions: distances from points to moves, and angles.
+//!
+//! Nothing here calls the code under test but `Segment::distance` and `point_at`, which have tests of
+//! their own against closed forms.
+
+#![allow(dead_code, reason = "each test file uses its own part of the judge")]
+
+use std::f64::consts::{PI, TAU};
+
+use sweptedge::envelope::SweptRegion;
+use sweptedge::geometry::{Arc, Point, Segment, Turn, Vec2};
+use sweptedge::program::MoveIndex;
+use sweptedge::view::{DiscFamily, DiscMove};
+
+/// A family from segments.
+pub fn family(segments: &[Segment], radius: f64) -> DiscFamily {
+    let moves = (0..).zip(segments).map(|(i, &segment)| DiscMove { segment, radius, source: MoveIndex(i) });
+    DiscFamily { moves: moves.collect() }
+}
+
+/// Lines through points.
+pub fn polyline(points: &[(f64, f64)]) -> Vec<Segment> {
+    points.windows(2).map(|w| Segment::line(Point::new(w[0].0, w[0].1), Point::new(w[1].0, w[1].1))).collect()
+}
+
+/// Clearance by brute force.
+pub fn clearance(family: &DiscFamily, p: Point) -> f64 {
+    family.moves.iter().map(|m| m.segment.distance(p) - m.radius).fold(f64::INFINITY, f64::min)
+}
+
+/// How often the loops of a region wind round a point: the angles its pieces are seen under, summed.
+pub fn winding(region: &SweptRegion, p: Point) -> i64 {
+    let total: f64 = region.segments().map(|s| angle_seen(s, p)).sum();
+    (total / TAU).round() as i64
+}
+
+fn angle_seen(s: &Segment, p: Point) -> f64 {
+    let (a, b) = (s.start() - p, s.end() - p);
+    let chord = a.cross(b).atan2(a.dot(b));
+    let Segment::Arc(arc) = s else { return chord };
+    if arc.sweep().abs() >= TAU - 1e-12 && s.start() == s.end() {
+        let inside = (p - arc.center()).hypot() < arc.radius();
+        return if inside { arc.sweep() } else { 0.0 };
+    }
+    // In quarters no cap is larger than a half disc: then the angle is that of the chord unless the
+    // point lies between chord and arc.
+    let pieces = (arc.sweep().abs() / (0.5 * PI)).ceil().max(1.0) as usize;
+    (0..pieces)
+        .map(|k| {
+            let part = arc.part(k as f64 / pieces as f64, (k + 1) as f64 / pieces as f64);
+            let (a, b) = (part.start() - p, part.end() - p);
+            let chord = a.cross(b).atan2(a.dot(b));
+            let right_of_chord =
+                (part.end() - part.start()).cross(p - part.start()) * part.sweep().signum() < 0.0;
+            let in_cap = right_of_chord && (p - part.center()).hypot() < part.radius();
+            if in_cap && chord * part.sweep() < 0.0 { chord + part.sweep().signum() * TAU } else { chord }
+        })
+        .sum()
+}
+
+/// Random numbers with a fixed start.
+pub type Rng = fastrand::Rng;
+
+/// A random path. `lattice` puts every number on a coarse grid, so that tangencies, retraced and
+/// concentric moves and slots of exactly twice the radius are common.
+pub fn random_path(rng: &mut Rng, lattice: bool) -> (Vec<Segment>, f64) {
+    let most = if rng.u8(..) < 40 { 24 } else { 7 };
+    let count = rng.usize(1..=most);
+    let step = if lattice { 1.0 } else { 0.0 };
+    let number = |rng: &mut Rng, range: f64| {
+        let v = (rng.f64() * 2.0 - 1.0) * range;
+        if step > 0.0 { v.round() } else { v }
+    };
+    let radius =
+        if lattice { [0.5, 1.0, 1.0, 1.5, 2.0, 3.0][rng.usize(0..6)] } else { 0.2 + 3.0 * rng.f64() };
+    let mut at = Point::new(number(rng, 6.0), number(rng, 6.0));
+    let first = at;
+    let mut path: Vec<Segment> = Vec::new();
+    while path.len() < count {
+        let roll = rng.u8(..100);
+        let next = match roll {
+            0..45 => Segment::line(at, Point::new(number(rng, 6.0), number(rng, 6.0))),
+            45..70 => {
+                let center = at + Vec2::new(number(rng, 4.0), number(rng, 4.0));
+                if center == at {
+                    continue;
+                }
+                let quarters = f64::from(rng.i32(1..=4)) * if rng.bool() { 1.0 } else { -1.0 };
+                let sweep = if lattice { quarters * 0.5 * PI } else { quarters * rng.f64() * 0.5 * PI };
+                let from = at - center;
+                // Quarter turns of lattice vectors stay on the lattice.
+                let end = if lattice {
+                    let mut v = from;
+                    for _ in 0..(quarters.abs() as i32) {
+                        v = if quarters > 0.0 { Vec2::new(-v.y, v.x) } else { Vec2::new(v.y, -v.x) };
+                    }
+                    center + v
+                } else {
+                    let (s, c) = sweep.sin_cos();
+                    center + Vec2::new(c * from.x - s * from.y, s * from.x + c * from.y)
+                };
+                let turn = if quarters > 0.0 { Turn::Left } else { Turn::Right };
+                match Arc::from_center(center, at, end, turn, 1e-9) {
+                    Ok(a) => Segment::Arc(a),
+                    Err(_) => continue,
+                }
+            }
+            70..78 => match path.last() {
+                Some(last) => last.reversed(),
+                None => continue,
+            },
+            78..84 => Segment::line(at, at),
+            84..90 => Segment::line(at, first),
+            90..95 => {
+                // A jump: the next move starts elsewhere.
+                at = Point::new(number(rng, 6.0), number(rng, 6.0));
+                continue;
+            }
+            _ => {
+                // Tangent: straight on from the last move.
+                let Some(last) = path.last() else { continue };
+                let d = last.tangent_at(1.0);
+                if d == Vec2::ZERO {
+                    continue;
+                }
+                Segment::line(at, at + d * (1.0 + rng.f64() * 3.0).round())
+            }
+        };
+        at = next.end();
+        path.push(next);
+    }
+    (path, radius)
+}

@@ -2,6 +2,7 @@
 //! value plus placed problems, or refuses with at least one error among them. No reader touches a
 //! file: that is the command line's.
 
+pub mod drawing;
 pub mod problem;
 
 pub use problem::{Place, Problem, Severity};

@@ -7,6 +7,8 @@
 //! the exact predicate of [`geo`] decides it ([`orientation`]).
 
 mod arc;
+mod biarc;
+mod chords;
 mod contour;
 mod crossing;
 mod index;
@@ -16,10 +18,14 @@ mod path;
 mod segment;
 
 pub use arc::{Arc, ArcError, Turn};
+pub use biarc::{
+    Approximation, Curve, CurveError, Enclosure, cubic_to_arcs, curve_to_arcs, ellipse_to_arcs, quad_to_arcs,
+};
+pub use chords::chords;
 pub use contour::{Contour, ContourError};
 pub use crossing::{Crossing, Few, Meeting, MeetingKind, Overlap, crossing};
 pub use index::BoxIndex;
-pub use kurbo::{Affine, Point, Rect, Vec2};
+pub use kurbo::{Affine, CubicBez, Point, QuadBez, Rect, Vec2};
 pub use line::{Line, Side, orientation};
 pub use nearest::Nearest;
 pub use path::{Path, PathError};

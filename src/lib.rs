@@ -11,5 +11,6 @@ pub mod geometry;
 pub mod input;
 pub mod part;
 pub mod program;
+pub mod report;
 pub mod tolerance;
 pub mod view;

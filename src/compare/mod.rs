@@ -3,6 +3,10 @@
 //! Depths and heights are distances, never leftovers of region subtraction: two ways to the same edge
 //! differ by slivers of rounding, and a distance does not see them.
 
+mod regions;
+
+pub use regions::Regions;
+
 use crate::geometry::{Path, Point};
 
 /// A figure and how far the truth may lie from it, both lengths: the interval is

@@ -13,7 +13,10 @@ mod raw;
 mod region;
 mod sweep;
 
+pub(crate) use arrangement::{Arrangement, Fragment, Strand};
 pub use clearance::{Clear, Clearance};
 pub use invariants::Broken;
+pub(crate) use link::{Choice, loops};
 pub use region::{EdgeLoop, EdgePiece, SweptRegion};
+pub(crate) use sweep::between;
 pub use sweep::{SweepError, sweep};

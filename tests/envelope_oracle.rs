@@ -55,3 +55,42 @@ fn random_and_lattice_paths_agree_with_clearance() {
         );
     }
 }
+
+/// Area and perimeter of a path's sweep.
+fn measures(path: &[Segment], radius: f64) -> (f64, f64, usize) {
+    let region = sweep(&family(path, radius)).unwrap();
+    (region.area(), region.perimeter(), region.loops.len())
+}
+
+#[test]
+fn nothing_changes_when_a_path_is_reversed_shifted_turned_mirrored_or_scaled() {
+    use sweptedge::geometry::Affine;
+    for case in 0..400 {
+        let mut rng = Rng::with_seed(90_000 + case);
+        let (path, radius) = random_path(&mut rng, case % 2 == 0);
+        let (area, perimeter, loops) = measures(&path, radius);
+        let reversed: Vec<Segment> = path.iter().rev().map(Segment::reversed).collect();
+        let maps = [
+            ("reversed", Affine::IDENTITY, 1.0, true),
+            ("shifted by 1e6", Affine::translate((1e6, -1e6)), 1.0, false),
+            ("turned", Affine::rotate(0.7), 1.0, false),
+            ("mirrored", Affine::FLIP_Y, 1.0, false),
+            ("scaled by 3", Affine::scale(3.0), 3.0, false),
+            ("scaled by 1/1024", Affine::scale(1.0 / 1024.0), 1.0 / 1024.0, false),
+        ];
+        for (name, map, scale, backwards) in maps {
+            let from = if backwards { &reversed } else { &path };
+            let moved: Vec<Segment> = from.iter().map(|s| s.mapped(map).unwrap()).collect();
+            let (a, p, _) = measures(&moved, radius * scale);
+            // A shift by 1e6 leaves 1e-10 of each coordinate, so a seam of exactly 2 r may open.
+            let slack = if name.starts_with("shifted") { 1e-6 } else { 1e-8 };
+            assert!(
+                (a / (scale * scale) - area).abs() < slack * (1.0 + area),
+                "case {case} {name}: area {a} from {area} ({loops} loops)\n{}",
+                source(&path, radius)
+            );
+            let seams = (p / scale - perimeter).abs() > 1e-6 * (1.0 + perimeter);
+            assert!(!(seams && case % 2 == 1), "case {case} {name}: perimeter {p} from {perimeter}");
+        }
+    }
+}

@@ -18,6 +18,9 @@ use super::clearance::Clearance;
 /// Longest bisection of a piece that shows no cover in its middle.
 const HALVINGS: u32 = 5;
 
+/// Share of a part that one clearance question must remove to be worth the next one.
+const WORTHWHILE: f64 = 0.2;
+
 /// A part of a piece that may be edge, by parameters; `cut` says which ends were made here, deep under
 /// another move.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -64,6 +67,12 @@ pub(crate) fn open_parts(
         {
             low = low.min(from);
             high = high.max(to);
+        }
+        // A shallow cover that hides only a little of a long part is left to the crossings: questions
+        // would nibble at it without end.
+        if high.min(part.to) - low.max(part.from) < WORTHWHILE * (part.to - part.from) {
+            append(open, first, part);
+            continue;
         }
         let [a, b] = part.cut;
         if high < part.to {

@@ -47,18 +47,47 @@ pub fn sweep(family: &DiscFamily) -> Result<SweptRegion, SweepError> {
     let Some(bounds) = family.bounds() else { return Ok(SweptRegion::default()) };
     let origin = local_origin(bounds);
     let shift = -origin.to_vec2();
-    let local = DiscFamily {
-        moves: family.moves.iter().map(|m| DiscMove { segment: shifted(&m.segment, shift), ..*m }).collect(),
-    };
+    let far = bounds.x0.abs().max(bounds.x1.abs()).max(bounds.y0.abs()).max(bounds.y1.abs());
     let extent = 0.5 * bounds.width().max(bounds.height());
-    let tolerances = Tolerances::for_extent(extent);
+    // Far from the origin the coordinates themselves were rounded before they came here.
+    let tolerances = Tolerances::for_extent(extent.max(far * ROUNDING_SHARE));
+    let (local, sources, residual) = seat(family, shift, tolerances.coincidence);
     let mut region = sweep_local(&local, &tolerances).map_err(|e| SweepError { at: e.at - shift })?;
     for piece in region.loops.iter_mut().flat_map(|l| &mut l.pieces) {
         piece.segment = shifted(&piece.segment, -shift);
+        piece.source = sources.get(piece.source).map_or(0, |&s| s as usize);
     }
-    let far = bounds.x0.abs().max(bounds.x1.abs()).max(bounds.y0.abs()).max(bounds.y1.abs());
-    region.bound = 8.0 * tolerances.coincidence + 4.0 * f64::EPSILON * far;
+    region.bound = 8.0 * tolerances.coincidence + 4.0 * f64::EPSILON * far + 2.0 * residual;
     Ok(region)
+}
+
+/// Coordinates of size `far` are rounded by `far` times 1.1e-16; [`Tolerances::for_extent`] allows 4e-13
+/// of the extent. This share of `far` as extent allows eighteen roundings.
+const ROUNDING_SHARE: f64 = 1.0 / 200.0;
+
+/// The family about the local origin, every arc with both ends on its circle; the family's position
+/// of each move; and the greatest residual that was mended.
+fn seat(family: &DiscFamily, shift: crate::geometry::Vec2, coincidence: f64) -> (DiscFamily, Vec<u32>, f64) {
+    let mut local = DiscFamily { moves: Vec::with_capacity(family.moves.len()) };
+    let mut sources = Vec::with_capacity(family.moves.len());
+    let mut greatest = 0.0f64;
+    for (i, m) in (0u32..).zip(&family.moves) {
+        let segment = shifted(&m.segment, shift);
+        let mut push = |segment: Segment| {
+            local.moves.push(DiscMove { segment, ..*m });
+            sources.push(i);
+        };
+        match segment {
+            Segment::Arc(a) if a.residual() > 0.125 * coincidence => {
+                greatest = greatest.max(a.residual());
+                let (first, second) = a.seated();
+                push(Segment::Arc(first));
+                second.into_iter().for_each(|a| push(Segment::Arc(a)));
+            }
+            s => push(s),
+        }
+    }
+    (local, sources, greatest)
 }
 
 /// A point near the middle of `bounds` whose coordinates have few digits, so that subtracting it from

@@ -263,6 +263,39 @@ impl Arc {
         off(self.start).max(off(self.end))
     }
 
+    /// The same arc with its centre moved so that both ends lie on its circle to the last digit. Where
+    /// it sweeps more than half a turn it becomes two such arcs. None of it moves by more than about
+    /// twice the residual.
+    ///
+    /// The new centre is the point on the chord's bisector nearest to the old one.
+    #[must_use]
+    pub fn seated(&self) -> (Self, Option<Self>) {
+        if self.sweep.abs() <= PI {
+            return (self.reseated(), None);
+        }
+        let (a, b) = (self.part(0.0, 0.5), self.part(0.5, 1.0));
+        (a.reseated(), Some(b.reseated()))
+    }
+
+    /// One arc of at most half a turn about a centre on its chord's bisector.
+    fn reseated(&self) -> Self {
+        let chord = self.end - self.start;
+        let length2 = chord.hypot2();
+        if length2 <= 0.0 {
+            return *self;
+        }
+        let middle = self.start.midpoint(self.end);
+        let along = chord * ((self.center - middle).dot(chord) / length2);
+        let center = self.center - along;
+        let a = self.start - center;
+        let radius = a.hypot();
+        let sweep = angle_between(a, self.end - center, self.turn());
+        if !(center.is_finite() && radius > 0.0) || sweep.abs() > 1.5 * PI {
+            return *self;
+        }
+        Self { center, radius, sweep, ..*self }
+    }
+
     /// Length along the arc.
     #[must_use]
     pub fn length(&self) -> f64 {

@@ -66,18 +66,19 @@ impl RawEdge {
         let mut chain: Vec<(u32, Segment)> = Vec::new();
         let mut radius = 0.0;
         for (i, m) in (0u32..).zip(&family.moves) {
-            let follows = chain.last().is_some_and(|(_, s)| s.end() == m.segment.start())
-                && m.radius.to_bits() == f64::to_bits(radius);
+            // Ends nearer than the coincidence length are one joint; joints go by number from here on.
+            let follows =
+                chain.last().is_some_and(|(_, s)| (s.end() - m.segment.start()).hypot() <= coincidence)
+                    && m.radius.to_bits() == f64::to_bits(radius);
             if !follows {
                 edge.chain(&chain, radius, coincidence);
                 chain.clear();
                 radius = m.radius;
             }
-            let point = m.segment.length() <= coincidence;
             match chain.last_mut() {
                 // A stop on the way adds nothing; a longer move takes the place of a stop.
-                Some(_) if point && m.segment.start() == m.segment.end() => {}
-                Some(last) if last.1.start() == last.1.end() && !is_circle(&last.1) => *last = (i, m.segment),
+                Some(_) if is_point(&m.segment, coincidence) => {}
+                Some(last) if is_point(&last.1, coincidence) => *last = (i, m.segment),
                 _ => chain.push((i, m.segment)),
             }
         }
@@ -88,11 +89,11 @@ impl RawEdge {
     /// Adds the closed curve round one chain (two of them round a closed chain).
     fn chain(&mut self, chain: &[(u32, Segment)], radius: f64, coincidence: f64) {
         let (Some(&(first, s)), Some(&(last, e))) = (chain.first(), chain.last()) else { return };
-        if chain.len() == 1 && s.start() == s.end() && !is_circle(&s) {
+        if chain.len() == 1 && is_point(&s, coincidence) {
             self.disc(first, s.start(), radius);
             return;
         }
-        let closed = s.start() == e.end();
+        let closed = (s.start() - e.end()).hypot() <= coincidence;
         let mut pen = Pen::new(self, radius, coincidence);
         for (k, &(i, m)) in chain.iter().enumerate() {
             pen.offset(i, &m, -radius);
@@ -132,9 +133,10 @@ impl RawEdge {
     }
 }
 
-/// A closed segment that goes round, as against a line that is a point.
-fn is_circle(segment: &Segment) -> bool {
-    matches!(segment, Segment::Arc(_))
+/// Does the whole segment count as one point?
+fn is_point(segment: &Segment, coincidence: f64) -> bool {
+    let b = segment.bounds();
+    b.width().max(b.height()) <= coincidence
 }
 
 /// Which offset a corner connects.

@@ -248,8 +248,9 @@ fn decide(
     let clear = clearance.at(at).map_or(f64::INFINITY, |c| c.clearance);
     let stub = (share.cut[0] && f.t[0] <= 0.0) || (share.cut[1] && f.t[1] >= 1.0);
     let kept = clear > 0.0 && !stub;
-    // A fragment in the open shows the full depth; leaving it out would tear the edge by its length.
-    let open = clear > 0.9 * tolerances.depth;
+    // A fragment in the open shows the full depth to well below what counts as coincident; leaving it
+    // out would tear the edge by its length.
+    let open = tolerances.depth - clear < 0.125 * tolerances.coincidence;
     let length = (f.t[1] - f.t[0]) * strand.segment.length();
     let doubt = if kept && open { clear + length } else { clear.abs() };
     Choice { fragment: *f, kept, doubt }

@@ -251,7 +251,8 @@ fn arc_arc(a: &Arc, b: &Arc, within: f64, found: &mut Few<Meeting, 8>) {
     }
     let u = v / d;
     let mut offer = |radial: Vec2, kind, reach: f64| {
-        let at = a.center() + radial;
+        // Circles that nearly coincide leave few digits in `radial`: lead it back to the first circle.
+        let at = a.center() + radial * (ra / radial.hypot());
         let from_b = at - b.center();
         if a.faces(radial) && b.faces(from_b) {
             let t = [a.parameter_of(radial).clamp(0.0, 1.0), b.parameter_of(from_b).clamp(0.0, 1.0)];

@@ -64,12 +64,18 @@ pub type Rng = fastrand::Rng;
 /// A random path. `lattice` puts every number on a coarse grid, so that tangencies, retraced and
 /// concentric moves and slots of exactly twice the radius are common.
 pub fn random_path(rng: &mut Rng, lattice: bool) -> (Vec<Segment>, f64) {
+    noisy_path(rng, lattice, 0.0)
+}
+
+/// The same, each number of a lattice path moved by up to `noise`: what was built to coincide then
+/// misses by a little.
+pub fn noisy_path(rng: &mut Rng, lattice: bool, noise: f64) -> (Vec<Segment>, f64) {
     let most = if rng.u8(..) < 40 { 24 } else { 7 };
     let count = rng.usize(1..=most);
     let step = if lattice { 1.0 } else { 0.0 };
     let number = |rng: &mut Rng, range: f64| {
         let v = (rng.f64() * 2.0 - 1.0) * range;
-        if step > 0.0 { v.round() } else { v }
+        if step > 0.0 { v.round() + noise * (rng.f64() - 0.5) } else { v }
     };
     let radius =
         if lattice { [0.5, 1.0, 1.0, 1.5, 2.0, 3.0][rng.usize(0..6)] } else { 0.2 + 3.0 * rng.f64() };
@@ -130,4 +136,43 @@ pub fn random_path(rng: &mut Rng, lattice: bool) -> (Vec<Segment>, f64) {
         path.push(next);
     }
     (path, radius)
+}
+
+/// The fewest moves of a path that still fail, found by leaving out ever smaller runs of them.
+pub fn reduced(path: &[Segment], fails: impl Fn(&[Segment]) -> bool) -> Vec<Segment> {
+    let mut best = path.to_vec();
+    let mut run = best.len() / 2;
+    while run > 0 {
+        let mut at = 0;
+        while at < best.len() {
+            let mut without = best.clone();
+            without.drain(at..(at + run).min(best.len()));
+            if !without.is_empty() && fails(&without) {
+                best = without;
+            } else {
+                at += run;
+            }
+        }
+        run /= 2;
+    }
+    best
+}
+
+/// A path as Rust source, every digit kept.
+pub fn as_source(path: &[Segment], radius: f64) -> String {
+    let mut text = format!("let radius = {radius:?};\nlet path = [\n");
+    for s in path {
+        let point = |p: Point| format!("Point::new({:?}, {:?})", p.x, p.y);
+        text += &match s {
+            Segment::Line(l) => format!("    Segment::line({}, {}),\n", point(l.start), point(l.end)),
+            Segment::Arc(a) => format!(
+                "    Segment::Arc(Arc::from_center({}, {}, {}, Turn::{:?}, 1.0).unwrap()),\n",
+                point(a.center()),
+                point(a.start()),
+                point(a.end()),
+                a.turn()
+            ),
+        };
+    }
+    text + "];"
 }

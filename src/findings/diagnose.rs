@@ -13,6 +13,8 @@
 //! | missed-pass | no move runs alongside within a radius |
 //! | unknown | none of these |
 
+use std::collections::HashSet;
+
 use super::Kind;
 use super::corner::{Tight, tight_place};
 use super::draft::{Diagnosis, Draft};
@@ -41,6 +43,10 @@ pub(super) struct Scene<'a> {
     pub cuts: Cuts<'a>,
     pub rapids: Cuts<'a>,
     constant: Option<Constant>,
+    unvisited: HashSet<usize>,
+    /// Folds by their first move, with their positions, and the most moves that one of them spans.
+    folds: Vec<(usize, Fold)>,
+    longest_fold: usize,
 }
 
 /// A deviation that is the same nearly everywhere.
@@ -56,7 +62,11 @@ impl<'a> Scene<'a> {
         let walls = Walls::new(&facts.part.contour);
         let cuts = Cuts::new(facts.cutting, facts.program);
         let rapids = Cuts::new(facts.rapids, facts.program);
-        let mut scene = Self { facts, walls, cuts, rapids, constant: None };
+        let unvisited = facts.comparison.never_visited.iter().copied().collect();
+        let mut folds: Vec<(usize, Fold)> = facts.comparison.folds.iter().copied().enumerate().collect();
+        folds.sort_by_key(|(_, f)| f.moves.0);
+        let longest_fold = folds.iter().map(|(_, f)| f.moves.1.saturating_sub(f.moves.0)).max().unwrap_or(0);
+        let mut scene = Self { facts, walls, cuts, rapids, constant: None, unvisited, folds, longest_fold };
         scene.constant = match &facts.comparison.deviation {
             Some(d) => Some(Constant { median: d.median, share: d.share }),
             None => scene.constant_of_stretches(),
@@ -71,7 +81,7 @@ impl<'a> Scene<'a> {
         let comparison = self.facts.comparison;
         let paths = 0..self.walls.contour().paths().len();
         let visited: f64 =
-            paths.filter(|p| !comparison.never_visited.contains(p)).map(|p| self.walls.path_length(p)).sum();
+            paths.filter(|p| !self.unvisited.contains(p)).map(|p| self.walls.path_length(p)).sum();
         let gouges = comparison.gouges.iter().map(|g| (g.depth.size, Walls::stretch_length(&g.stretch)));
         let visited_excess =
             comparison.excesses.iter().filter(|e| e.crest.is_none() && !self.is_unvisited(e));
@@ -88,13 +98,27 @@ impl<'a> Scene<'a> {
             })?;
             let near = sizes.iter().filter(|s| (s.0 - median.0).abs() <= SAME * median.0);
             let share = if visited > 0.0 { near.map(|s| s.1).sum::<f64>() / visited } else { 0.0 };
-            (share >= MOST_OF_IT).then_some(Constant { median: sign * median.0, share: share.min(1.0) })
+            // What compares with a summary is the deviation past contour and allowance.
+            let reserve = if sign < 0.0 { self.facts.part.allowance } else { 0.0 };
+            let median = sign * median.0 - reserve;
+            (share >= MOST_OF_IT).then_some(Constant { median, share: share.min(1.0) })
         })
     }
 
     fn is_unvisited(&self, excess: &Excess) -> bool {
         let path = excess.stretch.map(|s| s.path);
-        excess.whole_path && path.is_some_and(|p| self.facts.comparison.never_visited.contains(&p))
+        excess.whole_path && path.is_some_and(|p| self.unvisited.contains(&p))
+    }
+
+    /// Does no move come near any path of the contour?
+    pub(super) fn all_unvisited(&self) -> bool {
+        let paths = self.walls.contour().paths().len();
+        (0..paths).all(|p| self.unvisited.contains(&p))
+    }
+
+    /// Is there no path of the contour that was held against the program?
+    pub(super) fn nothing_judged(&self) -> bool {
+        self.all_unvisited() && self.facts.comparison.excesses.is_empty()
     }
 
     /// One draft for each thing the comparison found.
@@ -146,7 +170,7 @@ impl<'a> Scene<'a> {
             limit: Some(self.facts.limits.gouge),
             at: gouge.at,
             center: Some(gouge.center),
-            center_inside: gouge.center_inside,
+            center_inside: self.facts.part.contains(gouge.center),
             region: gouge.region.clone(),
             contour: Some(gouge.stretch),
             culprits: vec![(gouge.depth.size, gouge.worst_move)],
@@ -215,12 +239,14 @@ impl<'a> Scene<'a> {
         let Constant { median, share } = self.constant?;
         let limit = draft.limit?;
         let same_sign = (median < 0.0) == (draft.kind == Kind::Gouge);
+        // A gouge is measured past the contour itself, the deviation past contour and allowance.
+        let usual = if draft.kind == Kind::Gouge { -(median + self.facts.part.allowance) } else { median };
         let size = draft.figure.size;
         let covers = draft
             .contour
             .is_some_and(|c| Walls::stretch_length(&c) >= LONG_STRETCH * self.walls.path_length(c.path));
-        let belongs = (size - median.abs()).abs() <= SAME * median.abs() || (covers && size >= median.abs());
-        let explains = median.abs() * (1.0 + SAME) >= limit;
+        let belongs = (size - usual).abs() <= SAME * usual || (covers && size >= usual);
+        let explains = usual > 0.0 && usual * (1.0 + SAME) >= limit;
         (same_sign && belongs && explains).then_some(Diagnosis::Constant { median, share })
     }
 
@@ -237,9 +263,12 @@ impl<'a> Scene<'a> {
             };
             overlap && near && (fold.kind == FoldKind::Loop || inner())
         };
-        let folds = self.facts.comparison.folds.iter().enumerate().filter(|(_, f)| bites(f));
+        let from =
+            self.folds.partition_point(|(_, f)| f.moves.0.saturating_add(self.longest_fold) < gouge.moves.0);
+        let begun = self.folds.iter().skip(from).take_while(|(_, f)| f.moves.0 <= gouge.moves.1);
+        let folds = begun.filter(|(_, f)| bites(f));
         // A loop says more than the tight turns that it consists of.
-        let (fold, f) = folds.min_by_key(|(_, f)| f.kind != FoldKind::Loop)?;
+        let &(fold, f) = folds.min_by_key(|(_, f)| f.kind != FoldKind::Loop)?;
         Some(Diagnosis::Fold { fold, kind: f.kind, radius: f.radius, at: f.at, moves: f.moves })
     }
 
@@ -263,7 +292,7 @@ impl<'a> Scene<'a> {
     }
 
     fn too_narrow(&self, draft: &Draft) -> Option<Diagnosis> {
-        let radius = draft.radius + self.facts.part.allowance;
+        let radius = draft.radius;
         let path = draft.contour.map(|c| c.path);
         let narrow = |t: &Tight| matches!(t, Tight::Narrow { .. });
         tight_place(&self.walls, path, draft.at, radius, narrow).map(Diagnosis::Tight)

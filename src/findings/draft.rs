@@ -10,6 +10,9 @@ use crate::geometry::Point;
 /// Two steps or radii are the same when they differ by less than this fraction.
 const SAME_SIZE: f64 = 0.05;
 
+/// Moves remembered for one finding: more than are ever named, since several share a block.
+const MOST_CULPRITS: usize = 16;
+
 /// Why a finding came about, with what its remedy needs.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub(super) enum Diagnosis {
@@ -156,26 +159,22 @@ impl Draft {
         }
     }
 
-    /// Takes `other` in: the worse figure and place stand, stretches and regions grow.
-    fn absorb(&mut self, other: Self, walls: &Walls<'_>) {
-        let contour = match (self.contour, other.contour) {
-            (Some(a), Some(b)) if a.path == b.path => Some(hull(&a, &b, walls)),
-            (a, b) => {
-                if self.figure.size >= other.figure.size {
-                    a.or(b)
-                } else {
-                    b.or(a)
-                }
-            }
+    /// Both as one: the worse figure and place stand, stretches and regions grow.
+    fn joined(self, other: Self, walls: &Walls<'_>) -> Self {
+        let (mut worse, mut lesser) = if other.figure.size.total_cmp(&self.figure.size).is_gt() {
+            (other, self)
+        } else {
+            (self, other)
         };
-        let moves = (self.moves.0.min(other.moves.0), self.moves.1.max(other.moves.1));
-        let count = self.count.saturating_add(other.count);
-        let (mut worse, mut lesser) = (other, self.clone());
-        if worse.figure.size.total_cmp(&lesser.figure.size).is_le() {
-            std::mem::swap(&mut worse, &mut lesser);
-        }
+        worse.contour = match (worse.contour, lesser.contour) {
+            (Some(a), Some(b)) if a.path == b.path => Some(hull(&a, &b, walls)),
+            (a, b) => a.or(b),
+        };
+        worse.moves = (worse.moves.0.min(lesser.moves.0), worse.moves.1.max(lesser.moves.1));
+        worse.count = worse.count.saturating_add(lesser.count);
         worse.culprits.append(&mut lesser.culprits);
         worse.culprits.sort_by(|a, b| b.0.total_cmp(&a.0));
+        worse.culprits.truncate(MOST_CULPRITS);
         worse.region = match (worse.region, lesser.region) {
             (Some(mut a), Some(b)) => {
                 a.area += b.area;
@@ -184,7 +183,7 @@ impl Draft {
             }
             (a, b) => a.or(b),
         };
-        *self = Self { contour, moves, count, ..worse };
+        worse
     }
 }
 
@@ -224,10 +223,15 @@ pub(super) fn merged(mut drafts: Vec<Draft>, walls: &Walls<'_>) -> Vec<Draft> {
     drafts.sort_by(Draft::order);
     let mut out: Vec<Draft> = Vec::with_capacity(drafts.len());
     for draft in drafts {
-        match out.last_mut() {
-            Some(last) if last.is_one_with(&draft, walls) => last.absorb(draft, walls),
-            _ => out.push(draft),
-        }
+        let draft = match out.pop() {
+            Some(last) if last.is_one_with(&draft, walls) => last.joined(draft, walls),
+            Some(last) => {
+                out.push(last);
+                draft
+            }
+            None => draft,
+        };
+        out.push(draft);
     }
     join_over_starts(out, walls)
 }
@@ -245,9 +249,13 @@ fn join_over_starts(drafts: Vec<Draft>, walls: &Walls<'_>) -> Vec<Draft> {
             first_of_path = out.len();
         }
         let closed = draft.contour.is_some_and(|c| walls.is_closed(c.path));
-        match out.get_mut(first_of_path) {
-            Some(first) if closed && first.is_one_with(&draft, walls) => first.absorb(draft, walls),
-            _ => out.push(draft),
+        let goes_on = closed && out.get(first_of_path).is_some_and(|f| f.is_one_with(&draft, walls));
+        if goes_on {
+            // Few findings follow the first one of a path, so taking it out and in again is cheap.
+            let first = out.remove(first_of_path);
+            out.insert(first_of_path, first.joined(draft, walls));
+        } else {
+            out.push(draft);
         }
     }
     out

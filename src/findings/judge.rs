@@ -84,7 +84,11 @@ pub fn judge(facts: &Facts<'_>) -> Judgement {
     let comparison = facts.comparison;
     let worst =
         Worst { gouge: comparison.worst_gouge, excess: comparison.worst_excess, cusp: comparison.worst_cusp };
-    let verdict = verdict(&findings, &worst, &facts.limits);
+    let verdict = match verdict(&findings, &worst, &facts.limits) {
+        // Nothing was judged: that must not pass.
+        Verdict::Pass if scene.nothing_judged() => Verdict::Undecided,
+        verdict => verdict,
+    };
     Judgement { findings, worst, verdict, warnings: warnings(&scene) }
 }
 

@@ -22,8 +22,14 @@ mod wording;
 pub use corner::{largest_radius_in_corner, left_in_corner};
 pub use judge::{Facts, Judgement, judge};
 pub use moves::{chord_within, step_over_within};
-pub use number::{length_text, length_text_down, length_text_up, number_text, point_text};
+pub use number::{
+    figure_text, length_text, length_text_down, length_text_up, number_text, point_text, stated_text,
+};
+pub(crate) use number::{finest, readable, supported};
 pub use report::{
     BlockRef, Cause, Drawing, Finding, Inputs, Kind, Limits, Report, Severity, SweptSummary, Tool, Verdict,
     Worst,
 };
+
+#[cfg(test)]
+mod tests;

@@ -4,6 +4,7 @@
 //! small for that shows its first two digits. A number that the user is to type into a machine is
 //! rounded to the safe side: a greatest allowed length down, a least needed one up.
 
+use crate::compare::Figure;
 use crate::geometry::Point;
 use crate::program::Unit;
 
@@ -74,19 +75,53 @@ fn rounded(value: f64, unit: Unit, way: fn(f64) -> f64) -> f64 {
     if result.is_finite() { result } else { value }
 }
 
-/// A size and its limit with as many digits as tell them apart.
-pub(super) fn size_and_limit(size: f64, limit: f64, unit: Unit) -> (String, String) {
-    let (a, b) = (number_text(size, unit), number_text(limit, unit));
-    if a != b || size.total_cmp(&limit).is_eq() {
-        return (length_text(size, unit), length_text(limit, unit));
+/// Decimals the trade reads in a measured figure: a tenth of a micrometre, and about a quarter of one
+/// in inches.
+pub(crate) const fn readable(unit: Unit) -> usize {
+    match unit {
+        Unit::Millimetre => 4,
+        Unit::Inch => 5,
     }
-    for digits in decimals_for(size, unit)..=MOST_DECIMALS {
-        let (a, b) = (format!("{size:.digits$}"), format!("{limit:.digits$}"));
-        if a != b {
-            return (format!("{a} {}", unit.sign()), format!("{b} {}", unit.sign()));
+}
+
+/// Most decimals of a figure. A bound is never quoted finer than 10^-6 mm: nobody measures that.
+pub(crate) const fn finest(unit: Unit) -> usize {
+    readable(unit) + 2
+}
+
+/// Decimals that `bound` supports, at most `most`.
+pub(crate) fn supported(bound: f64, most: usize) -> usize {
+    let mut step = 1.0;
+    for decimals in 0..most {
+        // The factor forgives the rounding of 0.1, 0.01, ... themselves.
+        if step <= bound * (1.0 + 1e-9) {
+            return decimals;
+        }
+        step /= 10.0;
+    }
+    most
+}
+
+/// `figure`'s size with the digits the trade reads and its bound supports; when a `limit` is given,
+/// enough of them to tell it apart from that, as long as the bound supports them. Without unit.
+#[must_use]
+pub fn figure_text(figure: Figure, limit: Option<f64>, unit: Unit) -> String {
+    let most = supported(figure.bound, finest(unit));
+    let mut decimals = readable(unit).min(most);
+    let show = |x: f64, decimals: usize| format!("{:.decimals$}", x + 0.0);
+    if let Some(limit) = limit {
+        while decimals < most && show(figure.size, decimals) == show(limit, decimals) && figure.size > limit {
+            decimals += 1;
         }
     }
-    (length_text(size, unit), length_text(limit, unit))
+    show(figure.size, decimals)
+}
+
+/// A length the user stated: as short as it can be said, at most six decimals. Without unit.
+#[must_use]
+pub fn stated_text(length: f64) -> String {
+    let text = format!("{:.6}", length + 0.0);
+    text.trim_end_matches('0').trim_end_matches('.').to_owned()
 }
 
 /// A place as a program would say it: `X12.500 Y3.000`.
@@ -151,12 +186,6 @@ mod tests {
         assert_eq!(length_text_up(0.241_101, Unit::Millimetre), "0.242 mm");
         assert_eq!(length_text_down(2.0 - 1e-13, Unit::Millimetre), "2.000 mm");
         assert_eq!(length_text_up(2.0 + 1e-13, Unit::Millimetre), "2.000 mm");
-    }
-
-    #[test]
-    fn a_size_just_over_its_limit_shows_digits_that_differ() {
-        let (size, limit) = size_and_limit(0.050_000_4, 0.05, Unit::Millimetre);
-        assert_eq!((size.as_str(), limit.as_str()), ("0.0500004 mm", "0.0500000 mm"));
     }
 
     #[test]

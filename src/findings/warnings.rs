@@ -33,11 +33,6 @@ fn drawing(scene: &Scene<'_>) -> Place {
     Place::file(scene.facts.part.origins.first().map(|o| o.file.clone()).unwrap_or_default())
 }
 
-fn all_unvisited(scene: &Scene<'_>) -> bool {
-    let paths = scene.walls.contour().paths().len();
-    (0..paths).all(|p| scene.facts.comparison.never_visited.contains(&p))
-}
-
 fn box_text(b: Rect, unit: Unit) -> String {
     format!("{} to {}", point_text(b.origin(), unit), point_text((b.x1, b.y1).into(), unit))
 }
@@ -45,7 +40,7 @@ fn box_text(b: Rect, unit: Unit) -> String {
 /// Are the contour and the path as large as one in inches and one in millimetres would be?
 fn other_unit(scene: &Scene<'_>, part: Rect, path: Rect) -> Option<Problem> {
     let (a, b) = (part.width().max(part.height()), path.width().max(path.height()));
-    if !all_unvisited(scene) && scene.facts.comparison.gouges.is_empty() {
+    if !scene.all_unvisited() && scene.facts.comparison.gouges.is_empty() {
         return None;
     }
     let near = |ratio: f64| (MM_PER_INCH / UNIT_SLACK..=MM_PER_INCH * UNIT_SLACK).contains(&ratio);
@@ -77,7 +72,7 @@ fn elsewhere(scene: &Scene<'_>, part: Rect, path: Rect) -> Option<Problem> {
     let reach = scene.cuts.moves.iter().fold(0.0f64, |a, m| a.max(m.radius));
     let swept = path.inflate(reach, reach);
     let apart = swept.x1 < part.x0 || part.x1 < swept.x0 || swept.y1 < part.y0 || part.y1 < swept.y0;
-    if !(all_unvisited(scene) || apart) {
+    if !(scene.all_unvisited() || apart) {
         return None;
     }
     let unit = scene.facts.unit;

@@ -6,7 +6,8 @@ use super::diagnose::Scene;
 use super::draft::{Diagnosis, Draft};
 use super::moves::{Chords, Cuts, chord_within, step_over_within};
 use super::number::{
-    angle_text, angle_text_down, length_text, length_text_down, length_text_up, point_text, size_and_limit,
+    angle_text, angle_text_down, figure_text, length_text, length_text_down, length_text_up, point_text,
+    stated_text,
 };
 use super::walls::Walls;
 use super::{BlockRef, Kind};
@@ -61,16 +62,15 @@ impl<'a> Words<'a> {
 
     fn what(&self, d: &Draft) -> String {
         let at = point_text(d.at, self.unit);
-        let (size, limit) = match d.limit {
-            Some(limit) => size_and_limit(d.figure.size, limit, self.unit),
-            None => (self.len(d.figure.size), String::new()),
-        };
+        let sign = self.unit.sign();
+        let size = format!("{} {sign}", figure_text(d.figure, d.limit, self.unit));
+        let limit = format!("{} {sign}", stated_text(d.limit.unwrap_or(0.0)));
         let places = if d.count > 1 { format!(", the worst of {} places", d.count) } else { String::new() };
-        let past =
-            if self.allowance > 0.0 { "past the contour and its allowance" } else { "past the contour" };
         let on = if self.allowance > 0.0 { "over the allowance" } else { "on the contour" };
         match d.kind {
-            Kind::Gouge => format!("The cutter reaches {size} {past} at {at}{places} (limit {limit})"),
+            Kind::Gouge => {
+                format!("The cutter reaches {size} past the contour at {at}{places} (limit {limit})")
+            }
             Kind::Rapid => format!("A rapid move runs {size} into the part at {at}{places}"),
             Kind::Cusp => {
                 format!("A cusp of {size} stays between two passes at {at}{places} (limit {limit})")
@@ -243,7 +243,7 @@ impl<'a> Words<'a> {
         let within = tight.radius_within(limit, self.allowance).filter(|&r| r > 0.0 && r < d.radius);
         if let Some(r) = within.filter(|_| d.kind == Kind::Excess) {
             let diameter = self.down(2.0 * r);
-            let limit = self.len(limit);
+            let limit = format!("{} {}", stated_text(limit), self.unit.sign());
             ways.push(match tight {
                 Tight::Sharp { .. } if r < SENSIBLE * d.radius => format!(
                     "no round cutter reaches into a sharp corner (only {diameter} diameter or less would leave \
@@ -307,7 +307,7 @@ impl<'a> Words<'a> {
             self.down(chord),
             angle_text_down(angle),
             self.len(chords.radius),
-            self.len(limit)
+            format_args!("{} {}", stated_text(limit), self.unit.sign())
         )
     }
 

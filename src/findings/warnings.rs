@@ -2,6 +2,8 @@
 //! cuts, units that differ, a cutter wider than every opening. Each is a warning: the judgement stands,
 //! but it is hardly the one that was wanted.
 
+use std::collections::HashSet;
+
 use super::diagnose::Scene;
 use super::number::{length_text, point_text};
 use crate::geometry::Rect;
@@ -122,9 +124,9 @@ fn wider_than_openings(scene: &Scene<'_>) -> Option<Problem> {
 /// Loops that were left out of the judgement because nothing comes near them.
 fn left_out(scene: &Scene<'_>) -> Option<Problem> {
     let comparison = scene.facts.comparison;
-    let told =
-        |p: usize| comparison.excesses.iter().any(|e| e.whole_path && e.stretch.is_some_and(|s| s.path == p));
-    let count = comparison.never_visited.iter().filter(|p| !told(**p)).count();
+    let whole = comparison.excesses.iter().filter(|e| e.whole_path);
+    let told: HashSet<usize> = whole.filter_map(|e| e.stretch.map(|s| s.path)).collect();
+    let count = comparison.never_visited.iter().filter(|p| !told.contains(p)).count();
     (count > 0).then(|| {
         Problem::warning(
             drawing(scene),

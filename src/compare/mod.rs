@@ -11,8 +11,6 @@ pub use regions::Regions;
 
 use crate::geometry::{Path, Point};
 
-use crate::geometry::{Path, Point};
-
 /// A figure and how far the truth may lie from it, both lengths: the interval is
 /// `size - bound ..= size + bound`.
 #[derive(Clone, Copy, Debug, PartialEq)]

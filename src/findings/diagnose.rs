@@ -5,7 +5,7 @@
 //! | --- | --- |
 //! | wrong-diameter | the signed deviation is the same (within a tenth) along at least six tenths of the visited contour, has the finding's sign, and reaches the limit; the finding has that size or covers a quarter of its path |
 //! | never-visited | the comparison lists the whole path as unvisited |
-//! | missed-pass (cusp) | the comparison found a crest between two passes |
+//! | missed-pass (cusp) | the comparison found a crest between two passes no farther apart than the cutter is wide |
 //! | fold-left-in-path, tight-turn | a gouge by moves of a fold, no farther from it than the loop is wide, and on the inner side of a tight turn |
 //! | inside-corner | the contour's largest touching disc there is smaller than the cutter, and what a cutter must leave there explains the height |
 //! | chords-too-long | the worst move is one of at least three like chords, the contour there is curved, and their sagitta is 0.7 to 2.2 times the size |
@@ -191,7 +191,7 @@ impl<'a> Scene<'a> {
 
     fn excess(&self, excess: &Excess) -> Draft {
         let limits = &self.facts.limits;
-        let crest = excess.crest;
+        let crest = self.crest_step(excess).and(excess.crest);
         let size = excess.height.size;
         let culprits = match crest {
             Some(c) => vec![(size, c.moves.0), (size, c.moves.1)],
@@ -230,9 +230,17 @@ impl<'a> Scene<'a> {
         if self.is_unvisited(excess) {
             return Some(Diagnosis::NeverVisited);
         }
+        Some(Diagnosis::Crest { step: self.crest_step(excess)? })
+    }
+
+    /// Distance of the two passes beside a crest. `None` where there is no crest, or where the passes
+    /// stand farther apart than their cutters are wide: nothing was cut between them, and what stays
+    /// is a wall without a pass.
+    fn crest_step(&self, excess: &Excess) -> Option<f64> {
         let (a, b) = excess.crest?.moves;
         let near = |i: usize| self.cuts.segment(i).map(|s| s.nearest(excess.at).at);
-        Some(Diagnosis::Crest { step: (near(a)? - near(b)?).hypot() })
+        let step = (near(a)? - near(b)?).hypot();
+        (step <= self.cuts.radius(a) + self.cuts.radius(b)).then_some(step)
     }
 
     fn constant(&self, draft: &Draft) -> Option<Diagnosis> {

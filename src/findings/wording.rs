@@ -403,9 +403,10 @@ impl<'a> Words<'a> {
     }
 
     fn two_lines(&self, d: &Draft) -> String {
-        let (a, b) = (self.scene.cuts.line(d.moves.0), self.scene.cuts.line(d.moves.1));
+        let line = |k: usize| d.culprits.get(k).and_then(|c| self.scene.cuts.line(c.1));
+        let (a, b) = (line(0), line(1));
         match (a, b) {
-            (Some(a), Some(b)) if a != b => format!("lines {a} and {b}"),
+            (Some(a), Some(b)) if a != b => format!("lines {} and {}", a.min(b), a.max(b)),
             (Some(a), _) | (None, Some(a)) => format!("line {a}"),
             (None, None) => "unknown lines".to_owned(),
         }

@@ -318,6 +318,41 @@ fn a_cusp_names_both_passes_their_distance_and_the_step_that_would_do() {
 }
 
 #[test]
+fn equal_cusps_side_by_side_are_one_that_names_the_passes_of_the_worst() {
+    let wall = lines(&[p(0.0, 0.0), p(36.0, 0.0)]);
+    let part = part(vec![Path::new(wall, false).unwrap()], Keep::Right, 0.0);
+    let mut case = Case::new(part, &[], 5.0);
+    for k in 0..10 {
+        let x = 4.0 * f64::from(k);
+        case.command(Segment::line(p(x, 30.0), p(x, 5.0)), 5.0, MoveKind::Feed);
+    }
+    case.comparison.excesses = (0..9)
+        .map(|k| {
+            let x = 4.0 * k as f64 + 2.0;
+            let size = if k == 4 { 0.386 } else { 0.385 };
+            let mut cusp = excess(size, p(x, 0.0), k, stretch(0, x - 1.7, x + 1.7));
+            cusp.crest = Some(Crest { moves: (k, k + 1) });
+            cusp
+        })
+        .collect();
+    let f = case.only();
+    assert_eq!(f.kind, Kind::Cusp);
+    holds(&f.message, &["worst of 9 places", "lines 14 and 15 stand 4.000 mm apart"]);
+}
+
+#[test]
+fn passes_farther_apart_than_the_cutter_is_wide_leave_a_wall_and_no_cusp() {
+    let mut case = block_case(5.0, 5.0);
+    case.cutting.moves.truncate(3);
+    let mut wall = excess(30.0, p(0.0, 30.0), 0, stretch(0, 260.0, 320.0));
+    wall.crest = Some(Crest { moves: (0, 2) });
+    case.comparison.excesses = vec![wall];
+    let f = case.only();
+    assert_eq!((f.kind, f.cause, f.limit), (Kind::Excess, Cause::MissedPass, Some(0.05)));
+    holds(&f.message, &["no pass of the cutter of 10.000 mm runs along there"]);
+}
+
+#[test]
 fn a_wall_without_a_pass_is_a_missed_pass_and_one_beside_which_it_stands_off_is_not() {
     let mut case = block_case(5.0, 5.0);
     case.cutting.moves.truncate(3);

@@ -3,8 +3,10 @@
 //! Depths and heights are distances, never leftovers of region subtraction: two ways to the same edge
 //! differ by slivers of rounding, and a distance does not see them.
 
+mod deviation;
 mod regions;
 
+pub use deviation::{DeviationSummary, deviation_summary};
 pub use regions::Regions;
 
 use crate::geometry::{Path, Point};
@@ -145,4 +147,7 @@ pub struct Comparison {
     /// Paths of the contour the program never comes near (left out of the figures when the user
     /// asked for visited ones only).
     pub never_visited: Vec<usize>,
+    /// How even the deviation along the contour is: what tells a wrong cutter from a wrong move.
+    /// `None` when it was not looked for, or no cutter comes near.
+    pub deviation: Option<DeviationSummary>,
 }

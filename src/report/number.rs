@@ -5,48 +5,10 @@
 //! figure that would read the same as its limit gets the digits that tell the two apart, as long as
 //! its bound supports them.
 
-use crate::compare::Figure;
+use crate::findings::{finest, readable, supported};
 use crate::program::Unit;
 
-/// Decimals the trade reads: a tenth of a micrometre, and about a quarter of one in inches.
-const fn readable(unit: Unit) -> usize {
-    match unit {
-        Unit::Millimetre => 4,
-        Unit::Inch => 5,
-    }
-}
-
-/// Most decimals ever shown. A bound is never quoted finer than 10^-6 mm: nobody measures that.
-const fn finest(unit: Unit) -> usize {
-    readable(unit) + 2
-}
-
-/// Decimals that `bound` supports, at most `most`.
-fn supported(bound: f64, most: usize) -> usize {
-    let mut step = 1.0;
-    for decimals in 0..most {
-        // The factor forgives the rounding of 0.1, 0.01, ... themselves.
-        if step <= bound * (1.0 + 1e-9) {
-            return decimals;
-        }
-        step /= 10.0;
-    }
-    most
-}
-
-/// `size` with the digits its bound supports; when a `limit` is given, enough of them to tell it
-/// apart from that. Without unit.
-pub fn figure(figure: Figure, limit: Option<f64>, unit: Unit) -> String {
-    let most = supported(figure.bound, finest(unit));
-    let mut decimals = readable(unit).min(most);
-    let show = |x: f64, decimals: usize| format!("{:.decimals$}", x + 0.0);
-    if let Some(limit) = limit {
-        while decimals < most && show(figure.size, decimals) == show(limit, decimals) && figure.size > limit {
-            decimals += 1;
-        }
-    }
-    show(figure.size, decimals)
-}
+pub use crate::findings::{figure_text as figure, stated_text as stated};
 
 /// A bound, rounded up to one digit and never quoted finer than a millionth. Without unit.
 pub fn bound(bound: f64, unit: Unit) -> String {
@@ -57,12 +19,6 @@ pub fn bound(bound: f64, unit: Unit) -> String {
     // Rounding up may carry (0.095 to 0.10): then one digit less says the same.
     let text = format!("{up:.decimals$}");
     if decimals > 0 && text.ends_with('0') { format!("{up:.0$}", decimals - 1) } else { text }
-}
-
-/// A length the user stated: as short as it can be said, at most six decimals. Without unit.
-pub fn stated(length: f64) -> String {
-    let text = format!("{:.6}", length + 0.0);
-    text.trim_end_matches('0').trim_end_matches('.').to_owned()
 }
 
 /// A coordinate or a length along something: one decimal less than a figure. Without unit.
@@ -85,6 +41,7 @@ pub fn area(area: f64) -> String {
 #[cfg(test)]
 mod tests {
     use super::*;
+    use crate::compare::Figure;
     use crate::program::Unit::{Inch, Millimetre};
 
     fn fig(size: f64, bound: f64) -> Figure {

@@ -1,0 +1,6 @@
+//! Findings from comparisons made by hand: every cause, its numbers, merging, order and verdict.
+
+mod causes;
+mod fixture;
+mod verdicts;
+mod whole;

@@ -13,7 +13,7 @@ mod number;
 #[cfg(test)]
 mod sample;
 mod schema;
-// pub mod svg;
+pub mod svg;
 mod swept;
 pub mod text;
 

@@ -36,7 +36,7 @@ fn every_finding_says_place_block_cause_and_remedy() {
         "cause: fold-left-in-path",
         "to do: Take the loop between blocks N180 and N200",
         "4 faults, 1 note",
-        "area 4.30 square mm",
+        "area 1.65 square mm",
     ] {
         assert!(text.contains(piece), "{piece}\n{text}");
     }

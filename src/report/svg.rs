@@ -46,14 +46,13 @@ pub fn render(report: &Report) -> String {
     for ((finding, leader), number) in report.findings.iter().zip(leaders::place(&anchors)).zip(1..) {
         balloons = balloons.add(drawing::balloon(finding, number, &leader, &map));
     }
-    let rings = report.findings.iter().any(|f| drawing::needs_ring(f, &map));
     let title = format!("{}: {}", report.verdict.name(), headline(report));
     let document = sheet(&title, &format!("{} cut by {}", report.inputs.part, report.inputs.program))
         .add(inside)
         .add(balloons)
         .add(scale::axes())
         .add(scale::bar(&map, report.unit))
-        .add(column::of_report(report, &legend::entries(report, rings)));
+        .add(column::of_report(report, &legend::entries(report, &map)));
     finish(&document)
 }
 
@@ -67,14 +66,16 @@ pub fn render_swept(edge: &SweptEdge<'_>) -> String {
         .add(drawing::swept_region(edge.region, &map))
         .add(drawing::cutter_path(&path, &[], &map))
         .add(drawing::swept_edge(edge.region, &map));
+    let mut entries = vec![Entry::Swept, Entry::Path];
     if let Some(datum) = drawing::datum(&map) {
         inside = inside.add(datum);
+        entries.push(Entry::Zero);
     }
     let document = sheet("Swept edge", &format!("left by {}", edge.program.file))
         .add(inside)
         .add(scale::axes())
         .add(scale::bar(&map, edge.program.unit))
-        .add(column::of_swept(edge, &[Entry::Swept, Entry::Path]));
+        .add(column::of_swept(edge, &entries));
     finish(&document)
 }
 

@@ -4,7 +4,7 @@ use svg::node::element::{Group, Line, Rectangle};
 
 use super::hatch::{INK, RULE, ink};
 use super::legend::{Entry, ROW, legend};
-use super::lettering::{Align, SIZE, fit, lines, text};
+use super::lettering::{Align, SIZE, fit, fit_name, lines, text};
 use super::page::{COLUMN, mm};
 use crate::compare::Figure;
 use crate::findings::{Finding, Kind, Report, Verdict};
@@ -13,6 +13,8 @@ use crate::report::{care, headline, number};
 /// From one base line to the next, running text and small print.
 const STEP: f64 = 4.2;
 const SMALL_STEP: f64 = 3.1;
+/// Width of the words before values.
+const NAMES: f64 = 17.0;
 /// Size of the small print.
 const SMALL: f64 = 2.3;
 
@@ -44,13 +46,18 @@ impl Column {
         self.y += 0.6;
     }
 
-    /// A word before a value that is cut where it is too long.
-    fn fact(&mut self, name: &str, value: &str) {
-        const NAMES: f64 = 17.0;
-        self.y += STEP;
-        self.put(text(name, COLUMN.x0, self.y, SIZE, Align::Start).set("fill", RULE));
-        let value = fit(value, SIZE, COLUMN.width() - NAMES);
-        self.put(text(&value, COLUMN.x0 + NAMES, self.y, SIZE, Align::Start));
+    /// A word before a value of at most `most` lines.
+    fn fact(&mut self, name: &str, value: &str, most: usize) {
+        self.put(text(name, COLUMN.x0, self.y + STEP, SIZE, Align::Start).set("fill", RULE));
+        for line in lines(value, SIZE, COLUMN.width() - NAMES, most) {
+            self.y += STEP;
+            self.put(text(&line, COLUMN.x0 + NAMES, self.y, SIZE, Align::Start));
+        }
+    }
+
+    /// A word before the name of a file.
+    fn file(&mut self, word: &str, name: &str) {
+        self.fact(word, &fit_name(name, SIZE, COLUMN.width() - NAMES), 1);
     }
 }
 
@@ -83,11 +90,11 @@ pub fn of_swept(edge: &crate::report::SweptEdge<'_>, entries: &[Entry]) -> Group
     column.y += 6.0;
     column.put(text("Swept edge", COLUMN.x0, column.y, 5.0, Align::Start).set("font-weight", "bold"));
     column.rule();
-    column.fact("program", &edge.program.file);
-    column.fact("area", &format!("{} square {sign}", number::area(region.area())));
-    column.fact("length", &format!("{} {sign}", number::place(region.perimeter(), unit)));
-    column.fact("loops", &region.loops.len().to_string());
-    column.fact("certain to", &format!("{} {sign}", number::bound(region.bound, unit)));
+    column.file("program", &edge.program.file);
+    column.fact("area", &format!("{} square {sign}", number::area(region.area())), 1);
+    column.fact("length", &format!("{} {sign}", number::place(region.perimeter(), unit)), 1);
+    column.fact("loops", &region.loops.len().to_string(), 1);
+    column.fact("certain to", &format!("{} {sign}", number::bound(region.bound, unit)), 1);
     foot(&mut column, entries);
     column.group
 }
@@ -152,21 +159,25 @@ fn figures(column: &mut Column, report: &Report) {
 /// What was judged.
 fn facts(column: &mut Column, report: &Report) {
     let (inputs, sign) = (&report.inputs, report.unit.sign());
-    column.fact("part", &inputs.part);
-    column.fact("program", &inputs.program);
+    column.file("part", &inputs.part);
+    column.file("program", &inputs.program);
     let named = |t: &crate::findings::Tool| {
         let diameter = number::stated(t.diameter);
         if t.number == 0 { diameter } else { format!("T{} {diameter}", t.number) }
     };
     let tools: Vec<String> = inputs.tools.iter().map(named).collect();
-    column.fact("cutter \u{2300}", &format!("{} {sign}", tools.join(", ")));
-    column.fact("material", &format!("{}{}", inputs.keep, if inputs.keep_assumed { " (found)" } else { "" }));
+    column.fact("cutter \u{2300}", &format!("{} {sign}", tools.join(", ")), 3);
+    column.fact(
+        "material",
+        &format!("{}{}", inputs.keep, if inputs.keep_assumed { " (found)" } else { "" }),
+        1,
+    );
     if inputs.allowance > 0.0 {
-        column.fact("allowance", &format!("{} {sign}", number::stated(inputs.allowance)));
+        column.fact("allowance", &format!("{} {sign}", number::stated(inputs.allowance)), 1);
     }
     let placement =
         if inputs.placement.is_empty() { "as drawn".to_owned() } else { inputs.placement.join(", ") };
-    column.fact("placed", &placement);
+    column.fact("placed", &placement, 4);
 }
 
 /// Legend and care, from the foot up; where they begin.

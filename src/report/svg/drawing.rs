@@ -109,14 +109,16 @@ pub fn cutter_path<'a>(
 /// Program zero, where it is in sight.
 pub fn datum(map: &Map) -> Option<Group> {
     let at = map.point(Point::ORIGIN);
-    if !DOCKS.inset(-3.0).contains(at) {
-        return None;
-    }
+    DOCKS.inset(-3.0).contains(at).then(|| zero_mark(at).set("id", "se-zero"))
+}
+
+/// The mark of program zero.
+pub fn zero_mark(at: Point) -> Group {
     let (x, y) = (mm(at.x), mm(at.y));
     let cross = format!("M{} {y}h5M{x} {}v5", mm(at.x - 2.5), mm(at.y - 2.5));
     let ring = Circle::new().set("cx", x).set("cy", y).set("r", 1.3).set("fill", "none");
     let ring = ring.set("stroke", INK).set("stroke-width", 0.2);
-    Some(Group::new().set("id", "se-zero").add(ring).add(stroke(cross, INK, 0.2)))
+    Group::new().add(ring).add(stroke(cross, INK, 0.2))
 }
 
 /// The area of a finding, or the stretch of contour it takes; a ring where that is too small to see.
@@ -148,7 +150,10 @@ fn taken(finding: &Finding, report: &Report, map: &Map) -> Option<String> {
 
 /// Is nothing of it seen at this scale?
 pub fn needs_ring(finding: &Finding, map: &Map) -> bool {
-    let Some(region) = &finding.region else { return true };
+    let Some(region) = &finding.region else {
+        // Then its stretch of contour is marked, which shows where that is long enough.
+        return finding.contour.is_none_or(|s| (s.to - s.from) * map.scale < 4.0 * RING);
+    };
     let long = region.outline.iter().map(geometry::Path::bounds).any(|b| {
         let (w, h) = (b.width() * map.scale, b.height() * map.scale);
         w.max(h) >= 2.0 * VISIBLE && w.min(h) >= VISIBLE

@@ -80,6 +80,9 @@ fn on_border(s: f64) -> (Point, Point) {
 
 /// The position along the border nearest to `p`.
 fn nearest(p: Point) -> f64 {
+    if !p.is_finite() {
+        return 0.0;
+    }
     let (w, h) = sides();
     let x = (p.x - BALLOONS.x0 - CORNER).clamp(0.0, w);
     let y = (p.y - BALLOONS.y0 - CORNER).clamp(0.0, h);
@@ -216,5 +219,6 @@ mod tests {
     fn findings_at_one_point_or_none_at_all_are_no_trouble() {
         check(&[Point::new(100.0, 90.0); 12]);
         assert!(place(&[]).is_empty());
+        assert_eq!(place(&[Point::new(f64::NAN, 0.0), Point::new(0.0, f64::INFINITY)]).len(), 2);
     }
 }

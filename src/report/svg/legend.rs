@@ -1,17 +1,24 @@
 //! What the lines, colours and hatchings mean: only those that the drawing holds.
 
-use svg::node::element::{Circle, Group, Line, Rectangle};
+use svg::node::element::{Circle, Group, Line, Path, Rectangle};
 
-use super::hatch::{EDGE, INK, MATERIAL, PATH, SWEPT, ink};
+use super::drawing::{datum, needs_ring, zero_mark};
+use super::hatch::{EDGE, INK, MATERIAL, PATH, RULE, SWEPT, ink};
 use super::lettering::{Align, SIZE, text};
-use super::page::{COLUMN, mm};
+use super::page::{COLUMN, Map, mm};
 use crate::findings::{Kind, Severity};
+use crate::geometry::Point;
+use crate::part::Keep;
 
 /// One entry.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Entry {
     /// Outline and material of the part.
     Part,
+    /// Outline of an open chain with strokes on its material's side.
+    Chain,
+    /// Program zero.
+    Zero,
     /// The swept edge.
     Edge,
     /// The swept region with its edge.
@@ -37,6 +44,8 @@ impl Entry {
     const fn words(self) -> &'static str {
         match self {
             Self::Part => "part: outline and material",
+            Self::Chain => "part: outline, material side",
+            Self::Zero => "X0 Y0",
             Self::Edge => "edge the cutter leaves",
             Self::Swept => "area the cutter covers",
             Self::Path => "path of the cutter's center",
@@ -50,18 +59,21 @@ impl Entry {
 }
 
 /// The entries a report's drawing needs.
-pub fn entries(report: &crate::findings::Report, rings: bool) -> Vec<Entry> {
+pub fn entries(report: &crate::findings::Report, map: &Map) -> Vec<Entry> {
     let any = |test: &dyn Fn(&crate::findings::Finding) -> bool| report.findings.iter().any(test);
     let drawing = &report.drawing;
+    let chain = matches!(drawing.keep, Keep::Left | Keep::Right);
     [
-        (Entry::Part, true),
+        (Entry::Part, !chain),
+        (Entry::Chain, chain),
         (Entry::Edge, !drawing.swept.loops.is_empty()),
         (Entry::Path, !drawing.path.is_empty()),
         (Entry::Rapids, !drawing.rapids.is_empty()),
         (Entry::TooDeep, any(&|f| matches!(f.kind, Kind::Gouge | Kind::Rapid))),
         (Entry::LeftStanding, any(&|f| matches!(f.kind, Kind::Excess | Kind::Cusp))),
-        (Entry::Ring, rings),
+        (Entry::Ring, any(&|f| needs_ring(f, map))),
         (Entry::Open, any(&|f| f.severity == Severity::Note || !f.decided)),
+        (Entry::Zero, datum(map).is_some()),
     ]
     .into_iter()
     .filter_map(|(entry, shown)| shown.then_some(entry))
@@ -98,6 +110,13 @@ fn sample(entry: Entry, y: f64) -> Group {
     let group = Group::new();
     match entry {
         Entry::Part => group.add(area(MATERIAL, INK, 0.5)),
+        Entry::Chain => {
+            let strokes: String =
+                (1..5).map(|k| format!("M{} {}l-1.2 1.2", mm(x0 + 2.0 * f64::from(k)), mm(y))).collect();
+            let strokes = Path::new().set("d", strokes).set("stroke", RULE).set("stroke-width", 0.25);
+            group.add(strokes).add(line(INK, 0.5))
+        }
+        Entry::Zero => group.add(zero_mark(Point::new(x0 + 4.5, y))),
         Entry::Edge => group.add(line(EDGE, 0.4)),
         Entry::Swept => group.add(area(SWEPT, EDGE, 0.3)),
         Entry::Path => group.add(line(PATH, 0.25)),

@@ -51,6 +51,28 @@ pub fn fit(text: &str, size: f64, room: f64) -> String {
     format!("{}\u{2026}", kept.trim_end())
 }
 
+/// A file's name, its middle replaced by an ellipsis where it is wider than `room`: both the beginning
+/// and the ending tell files apart.
+pub fn fit_name(name: &str, size: f64, room: f64) -> String {
+    let name = plain(name);
+    if width(&name, size) <= room {
+        return name;
+    }
+    let chars: Vec<char> = name.chars().collect();
+    let (mut head, mut tail) = (String::new(), Vec::new());
+    let mut used = width("\u{2026}", size);
+    for (&front, &back) in chars.iter().zip(chars.iter().rev()) {
+        used += size * (advance(front) + advance(back));
+        if used > room {
+            break;
+        }
+        head.push(front);
+        tail.push(back);
+    }
+    let tail: String = tail.into_iter().rev().collect();
+    format!("{head}\u{2026}{tail}")
+}
+
 /// `text` in lines no wider than `room`; at most `most` of them, the last one cut where more follow.
 pub fn lines(text: &str, size: f64, room: f64, most: usize) -> Vec<String> {
     let mut out: Vec<String> = Vec::new();
@@ -107,6 +129,13 @@ mod tests {
         assert_eq!(fit("bracket.nc", 2.7, 60.0), "bracket.nc");
         let cut = fit(&"long-name-".repeat(20), 2.7, 60.0);
         assert!(cut.ends_with('\u{2026}') && width(&cut, 2.7) <= 60.0);
+    }
+
+    #[test]
+    fn a_long_name_keeps_its_beginning_and_its_ending() {
+        let name = fit_name("a-bracket-with-a-name-that-is-far-too-long-for-a-column.dxf", 2.7, 40.0);
+        assert!(name.starts_with("a-brac") && name.ends_with(".dxf") && width(&name, 2.7) <= 40.0, "{name}");
+        assert_eq!(fit_name("bracket.nc", 2.7, 40.0), "bracket.nc");
     }
 
     #[test]

@@ -113,6 +113,25 @@ mod tests {
     }
 
     #[test]
+    fn a_computed_edge_reads_back_with_its_area() {
+        let disc =
+            |segment| crate::view::DiscMove { segment, radius: 5.0, source: crate::program::MoveIndex(0) };
+        let path = sample::rounded(0.0)
+            .into_iter()
+            .chain([Segment::line(Point::new(8.0, 0.0), Point::new(60.0, 37.0))]);
+        let family = crate::view::DiscFamily { moves: path.map(disc).collect() };
+        let region = crate::envelope::sweep(&family).expect("a swept edge");
+        assert!(region.loops.len() > 1);
+        let drawing = read_back(&render(&region, Unit::Millimetre));
+        let areas = drawing.entities().map(|e| match &e.specific {
+            EntityType::LwPolyline(p) => area(p),
+            _ => f64::NAN,
+        });
+        let sum: f64 = areas.sum();
+        assert!((sum - region.area()).abs() < 1e-8, "{sum} {}", region.area());
+    }
+
+    #[test]
     fn no_handle_is_given_twice_and_every_owner_exists() {
         let text = render(&sample::swept().region, Unit::Millimetre);
         let lines: Vec<&str> = text.lines().map(str::trim).collect();

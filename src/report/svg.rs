@@ -32,8 +32,9 @@ pub fn render(report: &Report) -> String {
     let mut inside = clipped()
         .add(drawing::material(drawn, &map))
         .add(drawing::cutter_path(&drawn.path, &drawn.rapids, &map))
-        .add(drawing::swept_edge(&drawn.swept, &map))
-        .add(drawing::contour(drawn, &map));
+        // Where the edge follows the contour, as it should, it shows as a bright core in the dark line.
+        .add(drawing::contour(drawn, &map))
+        .add(drawing::swept_edge(&drawn.swept, &map));
     if let Some(datum) = drawing::datum(&map) {
         inside = inside.add(datum);
     }

@@ -4,7 +4,7 @@ use svg::node::element::{Group, Line, Rectangle};
 
 use super::hatch::{INK, RULE, ink};
 use super::legend::{Entry, ROW, legend};
-use super::lettering::{Align, SIZE, fit, fit_name, lines, text};
+use super::lettering::{Align, SIZE, fit, fit_name, fit_number, lines, listed, text};
 use super::page::{COLUMN, mm};
 use crate::compare::Figure;
 use crate::findings::{Finding, Kind, Report, Verdict};
@@ -46,18 +46,27 @@ impl Column {
         self.y += 0.6;
     }
 
-    /// A word before a value of at most `most` lines.
-    fn fact(&mut self, name: &str, value: &str, most: usize) {
+    /// A word before a value of one line.
+    fn fact(&mut self, name: &str, value: &str) {
+        self.facts(name, &[fit(value, SIZE, COLUMN.width() - NAMES)]);
+    }
+
+    /// A word before as many whole items as `most` lines hold.
+    fn list(&mut self, name: &str, items: &[String], most: usize) {
+        self.facts(name, &listed(items, SIZE, COLUMN.width() - NAMES, most));
+    }
+
+    fn facts(&mut self, name: &str, values: &[String]) {
         self.put(text(name, COLUMN.x0, self.y + STEP, SIZE, Align::Start).set("fill", RULE));
-        for line in lines(value, SIZE, COLUMN.width() - NAMES, most) {
+        for line in values {
             self.y += STEP;
-            self.put(text(&line, COLUMN.x0 + NAMES, self.y, SIZE, Align::Start));
+            self.put(text(line, COLUMN.x0 + NAMES, self.y, SIZE, Align::Start));
         }
     }
 
     /// A word before the name of a file.
     fn file(&mut self, word: &str, name: &str) {
-        self.fact(word, &fit_name(name, SIZE, COLUMN.width() - NAMES), 1);
+        self.facts(word, &[fit_name(name, SIZE, COLUMN.width() - NAMES)]);
     }
 }
 
@@ -91,10 +100,10 @@ pub fn of_swept(edge: &crate::report::SweptEdge<'_>, entries: &[Entry]) -> Group
     column.put(text("Swept edge", COLUMN.x0, column.y, 5.0, Align::Start).set("font-weight", "bold"));
     column.rule();
     column.file("program", &edge.program.file);
-    column.fact("area", &format!("{} square {sign}", number::area(region.area())), 1);
-    column.fact("length", &format!("{} {sign}", number::place(region.perimeter(), unit)), 1);
-    column.fact("loops", &region.loops.len().to_string(), 1);
-    column.fact("certain to", &format!("{} {sign}", number::bound(region.bound, unit)), 1);
+    column.fact("area", &format!("{} square {sign}", number::area(region.area())));
+    column.fact("length", &format!("{} {sign}", number::place(region.perimeter(), unit)));
+    column.fact("loops", &region.loops.len().to_string());
+    column.fact("certain to", &format!("{} {sign}", number::bound(region.bound, unit)));
     foot(&mut column, entries);
     column.group
 }
@@ -145,8 +154,8 @@ fn figures(column: &mut Column, report: &Report) {
         let y = column.y;
         column.put(text(kind.name(), COLUMN.x0, y, SIZE, Align::Start).set("fill", ink(kind).full));
         let size = figure.map_or_else(|| "\u{2013}".to_owned(), |f| number::figure(f, Some(limit), unit));
-        column.put(text(&fit(&size, SIZE, 24.0), size_at, y, SIZE, Align::End));
-        column.put(text(&fit(&number::stated(limit), SIZE, 20.0), limit_at, y, SIZE, Align::End));
+        column.put(text(&fit_number(&size, SIZE, 24.0), size_at, y, SIZE, Align::End));
+        column.put(text(&fit_number(&number::stated(limit), SIZE, 20.0), limit_at, y, SIZE, Align::End));
     };
     row(Kind::Gouge, worst.gouge, limits.gouge);
     row(Kind::Excess, worst.excess, limits.excess);
@@ -163,21 +172,17 @@ fn facts(column: &mut Column, report: &Report) {
     column.file("program", &inputs.program);
     let named = |t: &crate::findings::Tool| {
         let diameter = number::stated(t.diameter);
-        if t.number == 0 { diameter } else { format!("T{} {diameter}", t.number) }
+        if t.number == 0 { format!("{diameter} {sign}") } else { format!("T{} {diameter} {sign}", t.number) }
     };
     let tools: Vec<String> = inputs.tools.iter().map(named).collect();
-    column.fact("cutter \u{2300}", &format!("{} {sign}", tools.join(", ")), 3);
-    column.fact(
-        "material",
-        &format!("{}{}", inputs.keep, if inputs.keep_assumed { " (found)" } else { "" }),
-        1,
-    );
+    column.list("cutter \u{2300}", &tools, 3);
+    column.fact("material", &format!("{}{}", inputs.keep, if inputs.keep_assumed { " (found)" } else { "" }));
     if inputs.allowance > 0.0 {
-        column.fact("allowance", &format!("{} {sign}", number::stated(inputs.allowance)), 1);
+        column.fact("allowance", &format!("{} {sign}", number::stated(inputs.allowance)));
     }
-    let placement =
-        if inputs.placement.is_empty() { "as drawn".to_owned() } else { inputs.placement.join(", ") };
-    column.fact("placed", &placement, 4);
+    let as_drawn = ["as drawn".to_owned()];
+    let placement = if inputs.placement.is_empty() { &as_drawn } else { inputs.placement.as_slice() };
+    column.list("placed", placement, 4);
 }
 
 /// Legend and care, from the foot up; where they begin.
@@ -214,11 +219,15 @@ fn list(column: &mut Column, report: &Report, foot: f64) {
 fn entry(column: &mut Column, finding: &Finding, number: usize, report: &Report) {
     column.y += STEP;
     let y = column.y;
-    let place = finding.blocks.first().map(|b| format!("line {}", b.line)).unwrap_or_default();
+    let place = finding.blocks.first().map_or_else(String::new, |b| match b.line {
+        // The word makes way for the longest numbers.
+        line if line < 100_000_000 => format!("line {line}"),
+        line => line.to_string(),
+    });
     column.put(text(&number.to_string(), COLUMN.x0 + 6.0, y, SIZE, Align::End).set("font-weight", "bold"));
     let kind = text(finding.kind.name(), COLUMN.x0 + 8.0, y, SIZE, Align::Start);
     column.put(kind.set("fill", ink(finding.kind).full));
     let size = number::figure(finding.figure, finding.limit, report.unit);
-    column.put(text(&fit(&size, SIZE, 18.0), COLUMN.x0 + 38.0, y, SIZE, Align::End));
-    column.put(text(&fit(&place, SIZE, 20.0), COLUMN.x1, y, SIZE, Align::End));
+    column.put(text(&fit_number(&size, SIZE, 18.0), COLUMN.x0 + 38.0, y, SIZE, Align::End));
+    column.put(text(&place, COLUMN.x1, y, SIZE, Align::End));
 }

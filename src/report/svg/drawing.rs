@@ -70,14 +70,14 @@ fn tick_marks(segment: &Segment, side: f64, map: &Map) -> String {
 
 /// Outline of the part.
 pub fn contour(drawing: &Drawing, map: &Map) -> Path {
-    stroke(trace::paths(drawing.contour.paths(), map), INK, 0.5)
+    stroke(trace::paths(drawing.contour.paths(), map), INK, 0.7)
         .set("id", "se-contour")
         .set("stroke-linejoin", "round")
 }
 
 /// Swept edge, each loop closed.
 pub fn swept_edge(region: &crate::envelope::SweptRegion, map: &Map) -> Path {
-    stroke(loops(region, map), EDGE, 0.3).set("id", "se-swept-edge")
+    stroke(loops(region, map), EDGE, 0.25).set("id", "se-swept-edge")
 }
 
 /// The swept region filled, for the drawing that shows nothing else.

@@ -12,7 +12,7 @@ pub const RULE: &str = "#5f656e";
 /// Material of the part.
 pub const MATERIAL: &str = "#e9e7e2";
 /// The swept edge.
-pub const EDGE: &str = "#2b7a9b";
+pub const EDGE: &str = "#3398c0";
 /// The swept region, in the envelope's drawing.
 pub const SWEPT: &str = "#dcebf1";
 /// Path and rapids of the cutter.

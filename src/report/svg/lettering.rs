@@ -73,6 +73,37 @@ pub fn fit_name(name: &str, size: f64, room: f64) -> String {
     format!("{head}\u{2026}{tail}")
 }
 
+/// A number as text with as many of its decimals as fit. A number is never cut: what is left of it
+/// would read as another one.
+pub fn fit_number(number: &str, size: f64, room: f64) -> String {
+    let mut text = number.to_owned();
+    let Ok(value) = number.parse::<f64>() else { return text };
+    let mut decimals = number.split_once('.').map_or(0, |(_, d)| d.len());
+    while decimals > 0 && width(&text, size) > room {
+        decimals -= 1;
+        text = format!("{value:.decimals$}");
+    }
+    text
+}
+
+/// As many of `items` as fit into `most` lines, whole, and how many more there are.
+pub fn listed(items: &[String], size: f64, room: f64, most: usize) -> Vec<String> {
+    let mut best = vec![format!("{} in all", items.len())];
+    for shown in 1..=items.len() {
+        let more = items.len() - shown;
+        let mut text = items.iter().take(shown).cloned().collect::<Vec<_>>().join(", ");
+        if more > 0 {
+            text.push_str(&format!(" and {more} more"));
+        }
+        let lines = lines(&text, size, room, most + 1);
+        if lines.len() > most {
+            break;
+        }
+        best = lines;
+    }
+    best
+}
+
 /// `text` in lines no wider than `room`; at most `most` of them, the last one cut where more follow.
 pub fn lines(text: &str, size: f64, room: f64, most: usize) -> Vec<String> {
     let mut out: Vec<String> = Vec::new();
@@ -136,6 +167,22 @@ mod tests {
         let name = fit_name("a-bracket-with-a-name-that-is-far-too-long-for-a-column.dxf", 2.7, 40.0);
         assert!(name.starts_with("a-brac") && name.ends_with(".dxf") && width(&name, 2.7) <= 40.0, "{name}");
         assert_eq!(fit_name("bracket.nc", 2.7, 40.0), "bracket.nc");
+    }
+
+    #[test]
+    fn a_number_loses_decimals_and_never_digits() {
+        assert_eq!(fit_number("0.3100", 2.7, 18.0), "0.3100");
+        assert_eq!(fit_number("123456.7891", 2.7, 18.0), "123456.789");
+        assert_eq!(fit_number("123456.7891", 2.7, 1.0), "123457");
+    }
+
+    #[test]
+    fn a_list_shows_whole_items_and_counts_the_rest() {
+        let items: Vec<String> = (1..=30).map(|n| format!("T{n} 12.5")).collect();
+        let text = listed(&items, 2.7, 44.0, 2).join(" ");
+        assert!(text.starts_with("T1 12.5, T2 12.5") && text.ends_with(" more"), "{text}");
+        assert!(!text.contains('\u{2026}'));
+        assert_eq!(listed(&items[..1], 2.7, 44.0, 2), ["T1 12.5"]);
     }
 
     #[test]

@@ -96,6 +96,26 @@ fn open_chain() -> Report {
     report
 }
 
+/// As much to say in the column as it can ever get.
+fn wordy() -> Report {
+    let mut report = sample::crowded(12);
+    report.limits.assumed = true;
+    report.inputs.allowance = 0.123_456;
+    let tool = |number| crate::findings::Tool { number, diameter: 12.345_678 };
+    report.inputs.tools = (101..125).map(tool).collect();
+    let far = "shifted by X-12345.678901 Y-98765.432101".to_owned();
+    report.inputs.placement = vec!["mirrored about the drawing's y axis".into(), far.clone(), far];
+    report.inputs.program = "programs/".to_owned() + &"W".repeat(90) + ".nc";
+    for f in &mut report.findings {
+        f.figure.size *= 123_456.0;
+        f.blocks.iter_mut().for_each(|b| b.line = 12_345_678);
+        f.decided = false;
+    }
+    report.findings.push(sample::finding(Kind::Fold, 0.5, Point::new(3.0, 4.0)));
+    report.verdict = crate::findings::Verdict::Undecided;
+    report
+}
+
 #[test]
 fn no_text_overlaps_or_is_cut_off() {
     let mut inch = sample::undecided();
@@ -108,6 +128,7 @@ fn no_text_overlaps_or_is_cut_off() {
         ("overcrowded", sample::crowded(300)),
         ("pocket", pocket()),
         ("open-chain", open_chain()),
+        ("wordy", wordy()),
     ] {
         check_texts(&picture(name, &render(&report)));
     }

@@ -1,17 +1,18 @@
-//! The swept edge as a DXF drawing (AutoCAD release 2000 format): closed light-weight polylines whose
-//! bulges keep arcs as arcs, in the unit that $INSUNITS states.
+//! The swept edge as a DXF drawing of release 2000 (AC1015): closed light-weight polylines whose bulges
+//! keep arcs as arcs, in the unit that $INSUNITS states.
 //!
-//! Swept material's outer loops and its holes stand on two layers. The dates and identifiers that the
-//! format wants are fixed, so that the same edge gives the same bytes.
+//! Written by hand after the published DXF reference, because the format's frame must
+//! be whole for strict readers, because the same edge must give the same bytes (no date, no random
+//! identifier), and because coordinates keep every digit. Swept material's outer loops and its holes
+//! stand on two layers.
 
-use dxf::entities::{Entity, EntityType, LwPolyline};
-use dxf::enums::{AcadVersion, Units};
-use dxf::tables::Layer;
-use dxf::{Color, Drawing, DxfError, LwPolylineVertex};
+mod frame;
 
 use super::csv::vertices;
 use crate::envelope::{EdgeLoop, SweptRegion};
+use crate::geometry::Rect;
 use crate::program::Unit;
+use frame::{Pairs, handle};
 
 /// Layer of the loops round swept material.
 pub const OUTER_LAYER: &str = "SWEPT_EDGE";
@@ -21,62 +22,43 @@ pub const HOLE_LAYER: &str = "SWEPT_EDGE_HOLES";
 /// Bit of an LWPOLYLINE's flags: closed.
 const CLOSED: i32 = 1;
 
-/// The drawing; lengths in `unit`, with twelve decimals.
-///
-/// # Errors
-/// When the DXF writer refuses, which no region of finite numbers makes it do.
-pub fn render(region: &SweptRegion, unit: Unit) -> Result<Vec<u8>, DxfError> {
-    let mut drawing = Drawing::new();
-    let header = &mut drawing.header;
-    header.version = AcadVersion::R2000;
-    header.default_drawing_units = match unit {
-        Unit::Millimetre => Units::Millimeters,
-        Unit::Inch => Units::Inches,
-    };
-    header.creation_date = Default::default();
-    header.creation_date_universal = Default::default();
-    header.update_date = Default::default();
-    header.update_date_universal = Default::default();
-    header.fingerprint_guid = Default::default();
-    header.version_guid = Default::default();
-    for (name, color) in [(OUTER_LAYER, 5), (HOLE_LAYER, 4)] {
-        drawing.add_layer(Layer {
-            name: name.to_owned(),
-            color: Color::from_index(color),
-            ..Default::default()
-        });
+/// The drawing, in ASCII; lengths in `unit`.
+#[must_use]
+pub fn render(region: &SweptRegion, unit: Unit) -> String {
+    let loops: Vec<&EdgeLoop> = region.loops.iter().filter(|l| !l.pieces.is_empty()).collect();
+    let bounds = loops.iter().map(|l| l.bounds()).reduce(|a, b| a.union(b)).unwrap_or(Rect::ZERO);
+    let mut pairs = Pairs::default();
+    frame::before(&mut pairs, unit, bounds, loops.len());
+    for (edge, number) in loops.into_iter().zip(handle::FIRST_ENTITY..) {
+        polyline(&mut pairs, edge, number);
     }
-    for edge in region.loops.iter().filter(|l| !l.pieces.is_empty()) {
-        drawing.add_entity(polyline(edge));
-    }
-    let mut bytes = Vec::new();
-    drawing.save(&mut bytes)?;
-    Ok(bytes)
+    frame::after(&mut pairs);
+    pairs.text
 }
 
-fn polyline(edge: &EdgeLoop) -> Entity {
-    let vertex = |v: super::csv::Vertex| LwPolylineVertex {
-        x: v.at.x,
-        y: v.at.y,
-        bulge: v.bulge,
-        ..Default::default()
-    };
-    let vertices = vertices(edge).into_iter().map(vertex).collect();
-    let mut entity =
-        Entity::new(EntityType::LwPolyline(LwPolyline { flags: CLOSED, vertices, ..Default::default() }));
+fn polyline(pairs: &mut Pairs, edge: &EdgeLoop, number: usize) {
+    let vertices = vertices(edge);
     let layer = if edge.signed_area() < 0.0 { HOLE_LAYER } else { OUTER_LAYER };
-    entity.common.layer = layer.to_owned();
-    entity
+    pairs.begin("LWPOLYLINE", number, handle::MODEL_SPACE);
+    pairs.put(100, "AcDbEntity").put(8, layer).put(100, "AcDbPolyline");
+    pairs.put(90, vertices.len()).put(70, CLOSED).real(43, 0.0);
+    for v in vertices {
+        pairs.real(10, v.at.x).real(20, v.at.y).real(42, v.bulge);
+    }
 }
 
 #[cfg(test)]
 mod tests {
+    use ::dxf::Drawing;
+    use ::dxf::entities::{EntityType, LwPolyline};
+    use ::dxf::enums::Units;
+
     use super::*;
     use crate::geometry::{Arc, Point, Segment};
     use crate::report::sample;
 
-    fn read_back(bytes: &[u8]) -> Drawing {
-        Drawing::load(&mut std::io::Cursor::new(bytes)).expect("our own drawing")
+    fn read_back(text: &str) -> Drawing {
+        Drawing::load(&mut std::io::Cursor::new(text.as_bytes())).expect("our own drawing")
     }
 
     /// Area enclosed by a polyline read back, arcs rebuilt from its bulges.
@@ -97,7 +79,7 @@ mod tests {
     #[test]
     fn the_drawing_reads_back_with_the_area_of_every_loop() {
         let region = sample::swept().region;
-        let drawing = read_back(&render(&region, Unit::Millimetre).expect("a drawing"));
+        let drawing = read_back(&render(&region, Unit::Millimetre));
         assert_eq!(drawing.header.default_drawing_units, Units::Millimeters);
         let polylines: Vec<(String, LwPolyline)> = drawing
             .entities()
@@ -119,14 +101,51 @@ mod tests {
     #[test]
     fn inches_are_stated_and_the_same_edge_gives_the_same_bytes() {
         let region = sample::swept().region;
-        let (a, b) = (render(&region, Unit::Inch).expect("one"), render(&region, Unit::Inch).expect("two"));
+        let (a, b) = (render(&region, Unit::Inch), render(&region, Unit::Inch));
         assert_eq!(a, b);
         assert_eq!(read_back(&a).header.default_drawing_units, Units::Inches);
     }
 
     #[test]
     fn an_empty_region_is_a_drawing_without_entities() {
-        let bytes = render(&SweptRegion::default(), Unit::Millimetre).expect("a drawing");
-        assert_eq!(read_back(&bytes).entities().count(), 0);
+        let text = render(&SweptRegion::default(), Unit::Millimetre);
+        assert_eq!(read_back(&text).entities().count(), 0);
+    }
+
+    #[test]
+    fn a_computed_edge_reads_back_with_its_area() {
+        let disc =
+            |segment| crate::view::DiscMove { segment, radius: 5.0, source: crate::program::MoveIndex(0) };
+        let path = sample::rounded(0.0)
+            .into_iter()
+            .chain([Segment::line(Point::new(8.0, 0.0), Point::new(60.0, 37.0))]);
+        let family = crate::view::DiscFamily { moves: path.map(disc).collect() };
+        let region = crate::envelope::sweep(&family).expect("a swept edge");
+        assert!(region.loops.len() > 1);
+        let drawing = read_back(&render(&region, Unit::Millimetre));
+        let areas = drawing.entities().map(|e| match &e.specific {
+            EntityType::LwPolyline(p) => area(p),
+            _ => f64::NAN,
+        });
+        let sum: f64 = areas.sum();
+        assert!((sum - region.area()).abs() < 1e-8, "{sum} {}", region.area());
+    }
+
+    #[test]
+    fn no_handle_is_given_twice_and_every_owner_exists() {
+        let text = render(&sample::swept().region, Unit::Millimetre);
+        let lines: Vec<&str> = text.lines().map(str::trim).collect();
+        let pairs: Vec<(&str, &str)> = lines.chunks(2).map(|p| (p[0], p[1])).collect();
+        let (_, body) = pairs.split_at(pairs.iter().position(|p| p.1 == "TABLES").expect("tables"));
+        let given: Vec<&str> = body.iter().filter(|p| p.0 == "5" || p.0 == "105").map(|p| p.1).collect();
+        let unique: std::collections::HashSet<&str> = given.iter().copied().collect();
+        assert_eq!(unique.len(), given.len());
+        for (code, owner) in body.iter().filter(|p| ["330", "340", "350"].contains(&p.0)) {
+            assert!(*owner == "0" || unique.contains(owner), "{code} {owner}");
+        }
+        let seed =
+            pairs.iter().position(|p| p.1 == "$HANDSEED").and_then(|at| pairs.get(at + 1)).expect("a seed");
+        let number = |h: &str| usize::from_str_radix(h, 16).expect("a handle");
+        assert!(given.iter().all(|h| number(h) < number(seed.1)));
     }
 }

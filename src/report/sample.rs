@@ -51,11 +51,11 @@ fn closed(segments: Vec<Segment>) -> Path {
     Path::new(segments, true).expect("a sample loop")
 }
 
-/// The lens between the part's lower edge and a disc that dips 0.31 below it, widened to be seen.
+/// The lens between the part's lower edge and an arc that dips 0.31 into it.
 fn bite() -> Region {
     let (a, b) = (p(38.0, 0.0), p(46.0, 0.0));
-    let dip = Arc::from_bulge(b, a, 0.2).expect("a sample arc");
-    Region { area: 4.3, outline: vec![closed(vec![Segment::line(a, b), Segment::Arc(dip)])] }
+    let dip = Arc::from_bulge(b, a, 0.0775).expect("a sample arc");
+    Region { area: 1.65, outline: vec![closed(vec![Segment::line(a, b), Segment::Arc(dip)])] }
 }
 
 fn remainder() -> Region {

@@ -9,7 +9,7 @@ mod wrap;
 use anstyle::{Ansi256Color, Effects};
 
 use crate::compare::Figure;
-use crate::findings::{Finding, Kind, Report, Severity, Verdict};
+use crate::findings::{Cause, Finding, Kind, Report, Verdict};
 
 use super::{care, headline, number, plain};
 use table::verdict_word;
@@ -89,7 +89,7 @@ impl Page {
 const fn ink(kind: Kind) -> anstyle::Style {
     let colour = match kind {
         Kind::Gouge | Kind::Rapid => Ansi256Color(134),
-        Kind::Excess | Kind::Cusp => Ansi256Color(208),
+        Kind::Excess | Kind::Cusp => Ansi256Color(166),
         Kind::Fold => return anstyle::Style::new(),
     };
     anstyle::Style::new().fg_color(Some(anstyle::Color::Ansi256(colour)))
@@ -120,7 +120,7 @@ fn figures(page: &mut Page, report: &Report) {
     for (kind, figure, limit) in all {
         let name = page.paint(ink(kind), &format!("{:<6}", kind.name()));
         let said =
-            figure.map_or_else(|| "none found or not looked for".to_owned(), |f| against(f, limit, report));
+            figure.map_or_else(|| "not looked for, or none there".to_owned(), |f| against(f, limit, report));
         let indent = " ".repeat(10);
         for (at, line) in wrap(&said, page.width.saturating_sub(10)).iter().enumerate() {
             page.line(&if at == 0 { format!("  {name}  {line}") } else { format!("{indent}{line}") });
@@ -174,13 +174,15 @@ fn findings(page: &mut Page, report: &Report) {
 
 /// How many findings of each severity, in words.
 fn counted(findings: &[Finding]) -> String {
-    let faults = findings.iter().filter(|f| f.severity == Severity::Fault).count();
-    let plural = |n: usize, word: &str| if n == 1 { format!("1 {word}") } else { format!("{n} {word}s") };
-    match (faults, findings.len().saturating_sub(faults)) {
-        (faults, 0) => plural(faults, "fault"),
-        (0, notes) => plural(notes, "note"),
-        (faults, notes) => format!("{}, {}", plural(faults, "fault"), plural(notes, "note")),
-    }
+    let count = |word: &str| findings.iter().filter(|f| verdict_word(f) == word).count();
+    let said = |word: &str| match count(word) {
+        0 => None,
+        1 => Some(format!("1 {word}")),
+        n if word == "undecided" => Some(format!("{n} {word}")),
+        n => Some(format!("{n} {word}s")),
+    };
+    let all: Vec<String> = ["fault", "undecided", "note"].into_iter().filter_map(said).collect();
+    all.join(", ")
 }
 
 fn described(page: &mut Page, finding: &Finding, number: usize, report: &Report) {
@@ -207,8 +209,24 @@ fn described(page: &mut Page, finding: &Finding, number: usize, report: &Report)
     if finding.blocks.len() > 3 {
         page.paragraph(&indent, &format!("and {} blocks more", finding.blocks.len() - 3));
     }
-    page.paragraph(&indent, &format!("cause: {}", finding.cause.name()));
+    page.paragraph(&indent, &format!("cause: {} ({})", cause_words(finding.cause), finding.cause.name()));
     page.paragraph(&indent, &format!("to do: {}", finding.remedy));
+}
+
+/// A cause in a machinist's words.
+const fn cause_words(cause: Cause) -> &'static str {
+    match cause {
+        Cause::InsideCorner => "an inside corner of the contour is tighter than the cutter",
+        Cause::FoldLeftInPath => "the path still holds the loop of a folded offset",
+        Cause::WrongDiameter => "the cutter is not of the diameter the program was made for",
+        Cause::ChordsTooLong => "curves were cut into chords that are too long",
+        Cause::MissedPass => "a pass is missing or stands too far from the next one",
+        Cause::NeverVisited => "the program never comes near this part of the contour",
+        Cause::EntryOrExit => "the move that leads onto or off the contour",
+        Cause::RapidThroughPart => "a rapid move runs through the part",
+        Cause::TightTurn => "the path turns more tightly than the cutter's radius",
+        Cause::Unknown => "none that the geometry could name",
+    }
 }
 
 /// Where a finding is, in the drawing's coordinates, and how much is cut away or left.

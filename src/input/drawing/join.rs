@@ -12,7 +12,7 @@
 
 use std::collections::HashMap;
 
-use super::nodes::{Nodes, WhichEnd};
+use super::nodes::{End, Nodes, WhichEnd};
 use crate::geometry::{Arc, Path, Point, Segment};
 use crate::input::{Place, Problem, Refusal};
 use crate::part::Origin;
@@ -75,7 +75,9 @@ pub fn join(strands: Vec<Strand>, gaps: Gaps, file: &str) -> Result<Joined, Refu
     let strands = without_copies(strands, &nodes, gaps, &mut problems);
     let mut nodes = Nodes::same_ends(&strands, gaps.same);
     nodes.join_lone_ends(&strands, gaps, file)?;
-    refuse_forks(&strands, &nodes)?;
+    // Chains can be walked only where no node has a third end.
+    refuse_forks(&strands, &nodes.forks())?;
+    refuse_forks(&strands, &nodes.docked(&strands, gaps))?;
     refuse_near_misses(&strands, &nodes, gaps, file)?;
     if let Some(told) = nodes.closed_gaps(&strands, file) {
         problems.push(told);
@@ -154,8 +156,7 @@ fn tell_dropped(dropped: Vec<Place>, what: &str, help: &str, problems: &mut Vec<
 /// How many places of one kind of mistake are listed before the rest is only counted.
 const LISTED: usize = 8;
 
-fn refuse_forks(strands: &[Strand], nodes: &Nodes) -> Result<(), Refusal> {
-    let forks = nodes.forks();
+fn refuse_forks(strands: &[Strand], forks: &[Vec<End>]) -> Result<(), Refusal> {
     let mut refusal: Refusal = forks
         .iter()
         .take(LISTED)

@@ -1,7 +1,7 @@
 //! Which ends of strands are one point? Ends are hashed into a grid whose cells are as wide as the
 //! length asked about, so that only the nine cells round an end are looked at.
 
-use std::collections::HashMap;
+use std::collections::{HashMap, HashSet};
 
 use super::join::{Gaps, Strand};
 use crate::geometry::{BoxIndex, Point, Rect, Segment};
@@ -101,8 +101,8 @@ impl Nodes {
     }
 
     /// Nodes with three or more ends, in the order of their first strand.
-    pub(super) fn forks(&self) -> Vec<&Vec<End>> {
-        let mut forks: Vec<&Vec<End>> = self.ends.iter().filter(|e| e.len() > 2).collect();
+    pub(super) fn forks(&self) -> Vec<Vec<End>> {
+        let mut forks: Vec<Vec<End>> = self.ends.iter().filter(|e| e.len() > 2).cloned().collect();
         forks.sort_unstable_by_key(|e| e.first().map(|f| f.0));
         forks
     }
@@ -163,6 +163,27 @@ impl Nodes {
         }
         self.collect_ends();
         Ok(())
+    }
+
+    /// Lone ends that lie within the gap of an end of another chain, each with the ends it meets there.
+    pub(super) fn docked(&self, strands: &[Strand], gaps: Gaps) -> Vec<Vec<End>> {
+        let ends: Vec<(End, Point)> =
+            self.ends.iter().flatten().filter_map(|e| Some((*e, self.point(strands, *e)?))).collect();
+        let boxes: Vec<Rect> = ends.iter().map(|e| Rect::from_points(e.1, e.1)).collect();
+        let index = BoxIndex::new(&boxes);
+        let dock = |end: End| {
+            let p = self.point(strands, end)?;
+            let own: HashSet<usize> = self.chain_from(end.0).0.iter().map(|c| c.0).collect();
+            let distance = |j: usize| {
+                ends.get(j).filter(|e| !own.contains(&e.0.0)).map_or(f64::INFINITY, |e| (e.1 - p).hypot())
+            };
+            let (j, _) = index.nearest(p, gaps.join, distance)?;
+            let other = ends.get(j)?.0;
+            let mut met = self.ends.get(self.of(other.0, other.1))?.clone();
+            met.push(end);
+            Some(met)
+        };
+        self.lone().filter_map(dock).collect()
     }
 
     /// One warning for all gaps that were closed.

@@ -7,9 +7,8 @@
 //!   decides which lies to the left.                                            B_in --+-- A_in
 //! ```
 
-use super::contact::{Contact, contacts};
 use super::join::Gaps;
-use crate::geometry::{BoxIndex, Contour, Path, Point, Rect, Segment, Vec2};
+use crate::geometry::{BoxIndex, Contour, Crossing, MeetingKind, Path, Point, Rect, Segment, Vec2, crossing};
 use crate::input::{Place, Problem, Refusal};
 use crate::part::Origin;
 
@@ -190,11 +189,17 @@ impl Items {
     }
 
     fn crossing(&self, i: usize, j: usize) -> Option<Point> {
-        let (a, b) = (self.segments.get(i)?, self.segments.get(j)?);
-        contacts(a, b, TOUCH).into_iter().find_map(|contact| match contact {
-            Contact::Crosses(p) | Contact::Overlaps(p) => Some(p),
-            Contact::AtEnd(p) => self.crosses_at(p, i, j).then_some(p),
-        })
+        let at_touch = |p: Point| self.crosses_at(p, i, j).then_some(p);
+        match crossing(self.segments.get(i)?, self.segments.get(j)?, TOUCH) {
+            Crossing::None => None,
+            Crossing::Points(meetings) => meetings.iter().find_map(|m| match m.kind {
+                MeetingKind::Proper => Some(m.at),
+                MeetingKind::Touch => at_touch(m.at),
+            }),
+            Crossing::Overlap(stretches) => stretches.iter().find_map(|o| {
+                if o.from == o.to { at_touch(o.from.at) } else { Some(o.from.at.midpoint(o.to.at)) }
+            }),
+        }
     }
 
     /// Do the passes of segments `i` and `j` through `p`, an end of one of them, change sides?

@@ -2,7 +2,6 @@
 //! names. Every reader of a drawing gives the same [`Drawing`]; nothing is moved, turned or chosen
 //! here beyond the layers which the user asked for.
 
-mod contact;
 pub mod csv;
 pub mod dxf;
 mod finish;

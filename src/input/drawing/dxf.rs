@@ -181,7 +181,7 @@ fn contour_entities<'a>(
         return Err(refuse_kinds(&refused, file));
     }
     if let Some((_, first)) = left_out.values().min_by_key(|v| v.1.line) {
-        let counts: Vec<String> = left_out.iter().map(|(kind, (n, _))| format!("{n} {kind}")).collect();
+        let counts: Vec<String> = left_out.iter().map(|(kind, (n, _))| format!("{kind} ({n})")).collect();
         problems.push(Problem::warning(
             first.place(file),
             format!("left out, as they are no contour: {}", counts.join(", ")),

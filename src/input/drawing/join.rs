@@ -100,7 +100,7 @@ fn without_points(strands: Vec<Strand>, gaps: Gaps, problems: &mut Vec<Problem>)
             (!nothing).then_some(s)
         })
         .collect();
-    tell_dropped(dropped, "without length", "nothing: they bound no wall", problems);
+    tell_dropped(dropped, "(or a piece of one) without length", "nothing: they bound no wall", problems);
     kept
 }
 
@@ -204,7 +204,8 @@ fn refuse_near_misses(strands: &[Strand], nodes: &Nodes, gaps: Gaps, file: &str)
                     (a - b).hypot()
                 ),
                 format!("ends that meet, or lie within {} of one another", gaps.join),
-                "close the gap in the drawing (extend or trim the two entities to their common point)",
+                "close the gap in the drawing (extend or trim both entities to their common point), or take only \
+                 the layer of the finished contour (--layer)",
             )
         })
         .collect();

@@ -239,15 +239,20 @@ impl Reader<'_, '_> {
     }
 }
 
-/// The segment from `start` to `end` with a bulge, and how far it lies from what the bulge says: an
-/// arc so flat that its sagitta is below 1e-12 of the unit is a line. Nothing for an arc whose radius
-/// no number holds.
+/// The segment from `start` to `end` with a bulge, and how far it may lie from what the bulge says.
+/// The farther away its centre, the fewer digits an arc's points keep: one that is flatter than that
+/// loss is a line. Nothing for an arc whose radius no number holds.
 pub(in crate::input::drawing) fn bulged(start: Point, end: Point, bulge: f64) -> Option<(Segment, f64)> {
+    // Rounding of points that are computed from a centre at the distance `radius`.
+    let blur = |radius: f64| 4.0 * f64::EPSILON * radius;
     let chord = (end - start).hypot();
     let sagitta = 0.5 * bulge.abs() * chord;
-    if sagitta <= 1e-12 {
+    let radius = 0.25 * chord * (bulge.abs() + 1.0 / bulge.abs());
+    if sagitta <= blur(radius).max(1e-12) {
         return Some((Segment::line(start, end), sagitta));
     }
     let arc = Arc::from_bulge(start, end, bulge).ok()?;
-    Some((arc.into(), 0.0))
+    // Below a thousandth of what a drawing tolerates nobody is told.
+    let off = if blur(radius) > 1e-9 { blur(radius) } else { 0.0 };
+    Some((arc.into(), off))
 }

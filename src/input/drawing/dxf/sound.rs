@@ -41,16 +41,16 @@ pub(super) fn write(entity: &Entity<'_>, file: &str, text: &mut String) -> Resul
     checker.complete()?;
     // Writing to a string cannot fail.
     let _ = writeln!(text, "0\n{}", entity.kind);
-    let mut seen_x = false;
+    let mut has_vertex = entity.kind != "LWPOLYLINE";
     for pair in entity.pairs {
         let code = pair.code;
         if code == 0 {
             let _ = writeln!(text, "0\nVERTEX");
         } else if is_number(&entity.kind, code) {
             let value = checker.number(pair)?;
-            seen_x |= code == 10;
-            if matches!(code, 20 | 42) && !seen_x && entity.kind == "LWPOLYLINE" {
-                return Err(checker.refuse(pair, "y or bulge before the first x", "group code 10 first"));
+            has_vertex |= code == 10;
+            if code == 42 && !has_vertex {
+                return Err(checker.refuse(pair, "a bulge before the first vertex", "group code 10 first"));
             }
             let _ = writeln!(text, "{code}\n{value:?}");
         } else if code == 70 && entity.kind.ends_with("POLYLINE") {
@@ -93,25 +93,71 @@ impl Checker<'_> {
         }
     }
 
-    /// Are all codes there without which the entity has no shape, and as many vertices as it says?
+    /// Is every code there once without which the entity has no shape, has every vertex x and y, and
+    /// are there as many vertices as the entity says?
     fn complete(&self) -> Result<(), Refusal> {
         let entity = self.entity;
-        let has = |code: i32| entity.pairs.iter().any(|p| p.code == code);
-        if let Some(code) = needed(&entity.kind).iter().find(|c| !has(**c)) {
-            return Err(vec![Problem::error(
-                entity.place(self.file),
-                format!("group code {code} is missing in {}", entity.title()),
-                format!("all of the group codes {:?}", needed(&entity.kind)),
-                "correct the entity in the drawing or export it again",
-            )]);
+        for code in needed(&entity.kind) {
+            let mut with_code = entity.pairs.iter().filter(|p| p.code == *code);
+            match (with_code.next(), with_code.next()) {
+                (Some(_), None) => {}
+                (Some(_), Some(second)) => {
+                    return Err(self.refuse(second, &format!("group code {code} twice"), "each number once"));
+                }
+                (None, _) => return Err(self.missing(entity.line, *code)),
+            }
         }
-        let count = entity.pairs.iter().filter(|p| p.code == 10).count();
-        let said = entity.pairs.iter().find(|p| p.code == 90 && entity.kind == "LWPOLYLINE");
-        match said {
-            Some(pair) if pair.integer() != i64::try_from(count).ok() => {
+        match entity.kind.as_str() {
+            "LWPOLYLINE" => self.light_vertices(),
+            "POLYLINE" => self.old_vertices(),
+            _ => Ok(()),
+        }
+    }
+
+    fn missing(&self, line: usize, code: i32) -> Refusal {
+        vec![Problem::error(
+            Place::line(self.file, line, &self.entity.kind),
+            format!("group code {code} is missing in {}", self.entity.title()),
+            "every number of the entity",
+            "correct the entity in the drawing or export it again",
+        )]
+    }
+
+    fn light_vertices(&self) -> Result<(), Refusal> {
+        let mut count = 0i64;
+        let mut wanted = 10;
+        let mut line = self.entity.line;
+        for pair in self.entity.pairs.iter().filter(|p| matches!(p.code, 10 | 20)) {
+            if pair.code != wanted {
+                return Err(match wanted {
+                    10 => self.refuse(pair, "a y without its x", "group code 10 first"),
+                    _ => self.missing(line, wanted),
+                });
+            }
+            count += i64::from(wanted == 10);
+            wanted = 30 - wanted;
+            line = pair.line;
+        }
+        if wanted == 20 {
+            return Err(self.missing(line, 20));
+        }
+        match self.entity.pairs.iter().find(|p| p.code == 90) {
+            Some(pair) if pair.integer() != Some(count) => {
                 Err(self.refuse(pair, "a wrong number of vertices", &format!("the {count} that follow")))
             }
             _ => Ok(()),
         }
+    }
+
+    fn old_vertices(&self) -> Result<(), Refusal> {
+        for run in self.entity.pairs.chunk_by(|_, b| b.code != 0) {
+            let Some((name, pairs)) = run.split_first().filter(|r| r.0.code == 0) else { continue };
+            for code in [10, 20] {
+                if !pairs.iter().any(|p| p.code == code) {
+                    return Err(self.missing(name.line, code));
+                }
+            }
+        }
+        Ok(())
     }
 }

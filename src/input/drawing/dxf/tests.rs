@@ -88,7 +88,7 @@ fn text_and_points_are_left_out_and_told_once() {
     let reading = read_dxf(ROCKER.as_bytes(), "rocker.dxf", &on(&["FINISHED", "NOTES"])).unwrap();
     let [told] = reading.problems.as_slice() else { panic!("{:?}", reading.problems) };
     assert_eq!(told.severity, Severity::Warning);
-    assert_eq!(told.found, "left out, as they are no contour: 1 POINT, 1 TEXT");
+    assert_eq!(told.found, "left out, as they are no contour: POINT (1), TEXT (1)");
     assert_eq!(told.place.excerpt.as_deref(), Some("TEXT"));
 }
 
@@ -228,7 +228,7 @@ fn paper_sheets_and_invisible_entities_are_left_out() {
     assert_eq!(reading.value.contour.paths().len(), 1);
     assert_eq!(
         reading.problems[0].found,
-        "left out, as they are no contour: 1 entities on paper sheets, 1 invisible entities"
+        "left out, as they are no contour: entities on paper sheets (1), invisible entities (1)"
     );
 }
 
@@ -252,7 +252,19 @@ fn what_is_no_drawing_is_refused_with_its_line() {
     assert!(refused(&drawing(&["CIRCLE 10 0 20 0 40 -2"]))[0].found.contains("radius is -2"));
     let count = refused(&drawing(&["LWPOLYLINE 90 3 70 0 10 0 20 0 10 8 20 6"]));
     assert!(count[0].found.contains("wrong number of vertices"));
-    assert!(refused(&drawing(&["LWPOLYLINE 70 0 20 0 10 0 20 0"]))[0].found.contains("before the first x"));
+    for (bad, found) in [
+        ("LWPOLYLINE 70 0 20 0 10 0 20 0", "a y without its x"),
+        ("LWPOLYLINE 70 0 10 0 10 1 20 0 20 0", "group code 20 is missing"),
+        ("LWPOLYLINE 70 0 10 0 20 1 10 4", "group code 20 is missing"),
+        ("LWPOLYLINE 70 0 42 1 10 0 20 1 10 4 20 5", "a bulge before the first vertex"),
+        ("LWPOLYLINE 70 0 10 4 20 5", "fewer than two vertices"),
+        ("LWPOLYLINE 70 0 10 0 20 0 42 1e9 10 1e5 20 0", "reaches farther"),
+        ("POLYLINE 66 1 70 0 0 VERTEX 10 1 0 VERTEX 10 5 20 5 0 SEQEND", "group code 20 is missing"),
+        ("LINE 10 0 10 4 20 5 11 9 21 9", "group code 10 twice"),
+    ] {
+        let problems = refused(&drawing(&[bad]));
+        assert!(problems[0].found.contains(found), "{bad}: {}", problems[0].found);
+    }
 }
 
 #[test]
@@ -289,4 +301,28 @@ fn windows_line_ends_and_comments_change_nothing_but_lines() {
     let noted = read(&format!("999\nkeyhole plate, issue B\n{KEYHOLE}"));
     assert_eq!(plain.value.contour, noted.value.contour);
     assert_eq!(plain.value.origins[0].line.map(|l| l + 2), noted.value.origins[0].line);
+}
+
+/// A closed polyline whose first vertex is written twice, the first time with a bulge: once a cause of
+/// open results in general libraries (cavalier_contours issue 32).
+#[test]
+fn a_repeated_vertex_is_dropped_whatever_its_bulge() {
+    let square = "LWPOLYLINE 90 5 70 1 10 0 20 0 42 -0.0017 10 0 20 0 10 9 20 0 10 9 20 9 10 0 20 9";
+    let reading = read(&drawing(&[square]));
+    let path = &reading.value.contour.paths()[0];
+    assert!(path.is_closed() && path.segments().len() == 4);
+    assert!((area(path) - 81.0).abs() < 1e-12);
+    assert!(reading.problems[0].found.contains("without length"));
+}
+
+#[test]
+fn bulges_flatter_than_the_digits_of_their_radius_become_lines_within_a_bound() {
+    for bulge in ["1e-300", "1e-15", "-1e-9", "2e-8", "1e-7", "-1e-5"] {
+        let reading = read(&drawing(&[&format!("LWPOLYLINE 90 2 70 0 10 0 20 0 42 {bulge} 10 1000 20 0")]));
+        let contour = &reading.value.contour;
+        let sagitta = 500.0 * bulge.parse::<f64>().unwrap().abs();
+        let middle = contour.paths()[0].segments()[0].point_at(0.5);
+        assert!((middle.y.abs() - sagitta).abs() <= contour.bound() + 1e-12, "{bulge}: {middle:?}");
+        assert!(contour.bound() < 2e-5, "{bulge}: {}", contour.bound());
+    }
 }

@@ -162,7 +162,10 @@ fn copies_and_points_are_dropped_and_told() {
     let found: Vec<_> = joined.problems.iter().map(|p| p.found.as_str()).collect();
     assert_eq!(
         found,
-        ["an entity without length was left out", "2 entities drawn twice were left out, the first one here"]
+        [
+            "an entity (or a piece of one) without length was left out",
+            "2 entities drawn twice were left out, the first one here"
+        ]
     );
     assert_eq!(joined.problems[1].place.line, Some(9));
 }

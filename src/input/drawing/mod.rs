@@ -2,6 +2,16 @@
 //! names. Every reader of a drawing gives the same [`Drawing`]; nothing is moved, turned or chosen
 //! here beyond the layers which the user asked for.
 
+pub mod csv;
+pub mod dxf;
+mod finish;
+pub mod join;
+pub mod loops;
+mod nodes;
+
+pub use csv::read_csv;
+pub use dxf::read_dxf;
+
 use crate::geometry::Contour;
 use crate::part::Origin;
 use crate::program::Unit;

@@ -69,38 +69,39 @@ impl Commanded {
     /// The arc.
     ///
     /// # Errors
-    /// When there is none, marked at `span`.
-    pub fn make(&self, limits: &Limits, span: Span) -> Result<Made, Fault> {
+    /// When there is none; the caller knows what to mark.
+    pub fn make(&self, limits: &Limits) -> Result<Made, Fault> {
         let closed = (self.end - self.start).hypot() <= limits.one_point;
         match self.circle {
             Circle::Center(center) => {
                 let end = if closed { self.start } else { self.end };
                 let made = Arc::from_center(center, self.start, end, self.turn, limits.accepted);
-                let arc = made.map_err(|error| self.no_arc(error, center, limits, span))?;
+                let arc = made.map_err(|error| self.no_arc(error, center, limits))?;
                 let off = ((self.start - center).hypot() - (end - center).hypot()).abs();
                 Ok(Made { arc, bound: 0.5 * off, off })
             }
             Circle::Radius(_) if closed => Err(Fault::new(
-                span,
+                Span::default(),
                 "an arc by radius that ends where it starts",
                 "an end apart from the start: every circle of that radius through the point would do",
                 "give a full circle by its center (I, J, K), or correct the end",
             )),
-            Circle::Radius(radius) => self.by_radius(radius, limits, span),
+            Circle::Radius(radius) => self.by_radius(radius, limits),
         }
     }
 
-    fn by_radius(&self, radius: f64, limits: &Limits, span: Span) -> Result<Made, Fault> {
+    fn by_radius(&self, radius: f64, limits: &Limits) -> Result<Made, Fault> {
         let (size, large) = (radius.abs(), radius < 0.0);
         let arc = Arc::from_radius(self.start, self.end, size, self.turn, large, limits.accepted);
-        let arc = arc.map_err(|error| self.no_arc(error, self.start, limits, span))?;
+        let arc = arc.map_err(|error| self.no_arc(error, self.start, limits))?;
         let off = ((self.end - self.start).hypot() - 2.0 * size).max(0.0);
         Ok(Made { arc, bound: arc.residual().max(0.5 * off), off })
     }
 
     /// Why there is no arc, in a machinist's words.
     #[cold]
-    fn no_arc(&self, error: ArcError, center: Point, limits: &Limits, span: Span) -> Fault {
+    fn no_arc(&self, error: ArcError, center: Point, limits: &Limits) -> Fault {
+        let span = Span::default();
         let shown = |length: f64| format!("{} {}", figure(length * limits.to_block), limits.sign);
         let accepted = shown(limits.accepted);
         match error {

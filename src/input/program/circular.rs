@@ -24,7 +24,6 @@ impl Interpreter<'_> {
     /// # Errors
     /// When its words give none.
     pub(super) fn circular(&mut self, line: Line<'_>, words: &Words, turn: Turn) -> Result<(), Fault> {
-        let span = words.extent();
         one_turn(words)?;
         let circle_words = self.circle_words(words)?;
         let target = self.target(line, words)?;
@@ -33,7 +32,7 @@ impl Interpreter<'_> {
             self.arrive(target);
             return Ok(());
         }
-        (0..3).for_each(|axis| self.assume(line, span, axis));
+        self.assume_start(line, words);
         let before = self.position;
         self.arrive(target);
         let after = self.position;
@@ -41,18 +40,19 @@ impl Interpreter<'_> {
         let (start, end) = (before.in_plane(plane), after.in_plane(plane));
         let circle = self.circle(words, circle_words, start)?;
         let limits = self.limits();
-        let made = Commanded { start, end, turn, circle }.make(&limits, span)?;
+        let made =
+            Commanded { start, end, turn, circle }.make(&limits).map_err(|fault| fault.at(words.extent()))?;
         self.moves.bound = self.moves.bound.max(made.bound);
         if made.off > limits.standard {
             let shown = figure(made.off * limits.to_block);
-            self.faults.note(Note::WideArc, line, span, || {
+            self.faults.note(Note::WideArc, line, words.extent(), || {
                 let found =
                     format!("the arc's radii differ by {shown} {}: accepted by --arc-tolerance", limits.sign);
                 (found, "the control may stop here; its own limit is in the machine's parameters")
             });
         }
         let along = (before.along(plane), after.along(plane));
-        self.keep(line, span, Motion::Circular { plane, arc: made.arc, along }, MoveKind::Feed)
+        self.keep(line, words, Motion::Circular { plane, arc: made.arc, along }, MoveKind::Feed)
     }
 
     /// Is the circle given by R (true) or by its center (false)?

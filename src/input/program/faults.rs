@@ -50,6 +50,11 @@ impl Fault {
     ) -> Self {
         Self { span, found: found.into(), expected: expected.into(), help: help.into() }
     }
+
+    /// The same fault, marked at `span`.
+    pub fn at(self, span: Span) -> Self {
+        Self { span, ..self }
+    }
 }
 
 /// A line of the program: its number and its bytes.

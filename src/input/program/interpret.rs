@@ -11,27 +11,17 @@
 
 use super::codes::{self, Act, Distance, Function, Mode};
 use super::faults::{Fault, Faults, Line, Note, Span};
+use super::frame::Units;
 use super::moves::Moves;
 use super::orders::Orders;
 use super::position::{LETTERS, Position};
 use super::words::{Code, Words, bits};
 use super::{AXES, ProgramOptions};
 use crate::program::{Motion, MoveKind, Plane, Unit};
-use crate::tolerance::{GREATEST_COORDINATE, MM_PER_INCH};
+use crate::tolerance::GREATEST_COORDINATE;
 
 /// Where a coordinate is commanded, per axis, in the unit of the program given back.
 pub(super) type Target = [Option<f64>; 3];
-
-/// How the unit of the block was settled.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
-enum Units {
-    /// Not said and not yet needed.
-    Open,
-    /// Not said, and lengths were read in this one.
-    Assumed(Unit),
-    /// Said by G20 or G21.
-    Stated(Unit),
-}
 
 /// A control that reads a program.
 #[derive(Debug)]
@@ -42,15 +32,15 @@ pub(super) struct Interpreter<'a> {
     pub(super) position: Position,
     pub(super) plane: Plane,
     pub(super) centers: Distance,
-    units: Units,
-    unit_stated: bool,
+    pub(super) units: Units,
+    pub(super) unit_stated: bool,
     /// Unit of everything kept.
-    out: Option<Unit>,
+    pub(super) out: Option<Unit>,
     mode: Option<Mode>,
     pub(super) distance: Distance,
     /// The work offset in force: G code and P word.
-    offset: Option<(u16, i64)>,
-    placed: bool,
+    pub(super) offset: Option<(u16, i64)>,
+    pub(super) placed: bool,
     ended: bool,
 }
 
@@ -83,11 +73,6 @@ impl<'a> Interpreter<'a> {
     /// Has the program placed anything yet: a coordinate, a move?
     pub const fn placed(&self) -> bool {
         self.placed
-    }
-
-    /// Unit of the program given back, and whether the program said its own.
-    pub fn unit(&self) -> (Unit, bool) {
-        (self.out.or(self.options.target).unwrap_or(Unit::Millimetre), self.unit_stated)
     }
 
     /// Takes an error of a block; what follows starts from an unknown position.
@@ -152,72 +137,6 @@ impl<'a> Interpreter<'a> {
             self.mode = None;
         }
         self.mode = orders.motion.or(self.mode);
-        Ok(())
-    }
-
-    fn state_unit(&mut self, unit: Unit, code: Code) -> Result<(), Fault> {
-        if let Units::Assumed(assumed) = self.units
-            && assumed != unit
-        {
-            return Err(Fault::new(
-                code.span,
-                format!(
-                    "{} comes after lengths that were read in {}",
-                    codes::name('G', code.tenths),
-                    assumed.sign()
-                ),
-                "the unit before the first length",
-                "write G20 (inch) or G21 (mm) at the start of the program, or state the unit with --units",
-            ));
-        }
-        self.units = Units::Stated(unit);
-        self.unit_stated = true;
-        self.out = self.out.or(self.options.target).or(Some(unit));
-        Ok(())
-    }
-
-    /// Unit of the lengths of this block.
-    pub(super) fn block_unit(&mut self) -> Unit {
-        let unit = match self.units {
-            Units::Stated(unit) | Units::Assumed(unit) => unit,
-            Units::Open => {
-                let unit = self.options.unit.unwrap_or(Unit::Millimetre);
-                self.units = Units::Assumed(unit);
-                unit
-            }
-        };
-        self.out = self.out.or(self.options.target).or(Some(unit));
-        unit
-    }
-
-    /// A length of this block in the unit of what is kept; exact where both are one.
-    pub(super) fn length(&mut self, value: f64) -> f64 {
-        match (self.block_unit(), self.unit().0) {
-            (Unit::Inch, Unit::Millimetre) => value * MM_PER_INCH,
-            (Unit::Millimetre, Unit::Inch) => value / MM_PER_INCH,
-            _ => value,
-        }
-    }
-
-    fn work_offset(&mut self, code: Code, words: &Words) -> Result<(), Fault> {
-        #[allow(clippy::cast_possible_truncation, reason = "saturates, and is only compared")]
-        let number = if code.tenths == 541 { words.get(b'P').unwrap_or(0.0) as i64 } else { 0 };
-        let chosen = (code.tenths, number);
-        let before = self.offset.or(self.placed.then_some((540, 0)));
-        if before.is_some_and(|b| b != chosen) {
-            let first = before.map_or(540, |b| b.0);
-            return Err(Fault::new(
-                code.span,
-                format!(
-                    "{} after coordinates in {}: how far apart the two zeros lie is set on the machine",
-                    codes::name('G', code.tenths),
-                    codes::name('G', first)
-                ),
-                "one work offset in the whole program",
-                "check each set-up in a file of its own",
-            ));
-        }
-        self.offset = Some(chosen);
         Ok(())
     }
 
@@ -313,8 +232,15 @@ impl<'a> Interpreter<'a> {
         Ok(self.length(value))
     }
 
+    /// Takes every axis whose position the program has not said as standing at 0, and says so.
+    pub(super) fn assume_start(&mut self, line: Line<'_>, words: &Words) {
+        if self.position.known.contains(&false) {
+            (0..3).for_each(|axis| self.assume(line, words.extent(), axis));
+        }
+    }
+
     /// Takes an axis as standing at 0 where the program has not said its position, and says so.
-    pub(super) fn assume(&mut self, line: Line<'_>, span: Span, axis: usize) {
+    fn assume(&mut self, line: Line<'_>, span: Span, axis: usize) {
         let Some(known) = self.position.known.get_mut(axis) else { return };
         if *known {
             return;
@@ -338,19 +264,19 @@ impl<'a> Interpreter<'a> {
 
     fn straight(&mut self, line: Line<'_>, words: &Words, kind: MoveKind) -> Result<(), Fault> {
         let target = self.target(line, words)?;
-        self.travel(line, words.extent(), target, kind)
+        self.travel(line, words, target, kind)
     }
 
     /// A straight move to `target`. A rapid from a point that is not known sweeps nothing but its end.
     pub(super) fn travel(
         &mut self,
         line: Line<'_>,
-        span: Span,
+        words: &Words,
         target: Target,
         kind: MoveKind,
     ) -> Result<(), Fault> {
         if kind == MoveKind::Feed {
-            (0..3).for_each(|axis| self.assume(line, span, axis));
+            self.assume_start(line, words);
         }
         let before = self.position;
         self.arrive(target);
@@ -360,7 +286,7 @@ impl<'a> Interpreter<'a> {
         }
         let known = before.knows_plan() && (before.knows_height() || !after.knows_height());
         let start = if known { before.point() } else { after.point() };
-        self.keep(line, span, Motion::Straight { start, end: after.point() }, kind)?;
+        self.keep(line, words, Motion::Straight { start, end: after.point() }, kind)?;
         if !after.knows_height() && !self.faults.refused() {
             self.moves.last_is_blind();
         }
@@ -385,7 +311,7 @@ impl<'a> Interpreter<'a> {
     pub(super) fn keep(
         &mut self,
         line: Line<'_>,
-        span: Span,
+        words: &Words,
         motion: Motion,
         kind: MoveKind,
     ) -> Result<(), Fault> {
@@ -393,7 +319,12 @@ impl<'a> Interpreter<'a> {
             return Ok(());
         }
         self.moves.push(line, motion, kind).map_err(|_| {
-            Fault::new(span, "more than 4,294,967,295 moves", "", "check the program in parts, a file each")
+            Fault::new(
+                words.extent(),
+                "more than 4,294,967,295 moves",
+                "",
+                "check the program in parts, a file each",
+            )
         })
     }
 

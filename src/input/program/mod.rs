@@ -25,6 +25,7 @@ mod arcs;
 mod circular;
 mod codes;
 mod faults;
+mod frame;
 mod interpret;
 mod lines;
 mod moves;
@@ -157,17 +158,18 @@ impl Reader<'_> {
         let (unit, unit_stated) = self.control.unit();
         let options = self.control.options;
         let Interpreter { mut faults, moves, .. } = self.control;
-        if moves.is_empty() && !faults.refused() {
-            faults.error_of_file(
-                "no move in this program",
-                "G0, G1, G2 or G3 with X, Y or Z, of which X and Y are both named",
-                "check that this is the right file and that its moves are not all in comments",
-            );
-        }
         if faults.refused() {
             return Err(faults.into_refusal());
         }
         let (program, left_out) = moves.finish(file, unit, unit_stated);
+        if program.moves.is_empty() {
+            faults.error_of_file(
+                "no move in this program that can be judged",
+                "G0, G1, G2 or G3 to a point whose X and Y are both named, and Z where the program names it at all",
+                "check that this is the right file and that its moves are not all in comments",
+            );
+            return Err(faults.into_refusal());
+        }
         let mut of_file = Vec::new();
         if !unit_stated && options.unit.is_none() {
             of_file.push(unit_assumed(file));

@@ -31,11 +31,6 @@ pub(super) struct Moves {
 pub(super) struct TooMany;
 
 impl Moves {
-    /// Is there none?
-    pub const fn is_empty(&self) -> bool {
-        self.moves.is_empty()
-    }
-
     /// Adds a move of the block at `line`.
     ///
     /// # Errors

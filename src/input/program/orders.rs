@@ -41,17 +41,17 @@ impl Orders {
     /// Two codes of one group, or a code that is refused or not known.
     pub fn of(words: &Words) -> Result<Self, Fault> {
         let mut orders = Self::default();
-        let mut groups = [None::<Code>; 32];
+        let mut groups = 0;
         for &code in words.g.all() {
             let (group, act) = codes::preparatory(code.tenths);
-            one_of_group('G', &mut groups, group, code)?;
+            one_of_group(words, 'G', &mut groups, group, code)?;
             orders.take(act, code, words)?;
         }
-        let mut groups = [None::<Code>; 32];
+        let mut groups = 0;
         for &code in words.m.all() {
             let (group, function) = codes::miscellaneous(code.tenths / 10);
             if function != Function::Unknown {
-                one_of_group('M', &mut groups, group, code)?;
+                one_of_group(words, 'M', &mut groups, group, code)?;
             }
             orders.function(function, code)?;
         }
@@ -117,15 +117,27 @@ fn refusal(code: Code, what: &str, help: &str) -> Fault {
     Fault::new(code.span, format!("{} {what}", codes::name('G', code.tenths)), "", help)
 }
 
-/// Notes `code` in its group.
-fn one_of_group(letter: char, groups: &mut [Option<Code>; 32], group: u8, code: Code) -> Result<(), Fault> {
-    let Some(slot) = groups.get_mut(usize::from(group)) else { return Ok(()) };
-    let Some(first) = slot.replace(code) else { return Ok(()) };
+/// Notes the group of `code`, which must not be among those of the codes before it.
+fn one_of_group(words: &Words, letter: char, groups: &mut u32, group: u8, code: Code) -> Result<(), Fault> {
+    let bit = 1_u32.wrapping_shl(u32::from(group));
+    let taken = *groups & bit != 0;
+    *groups |= bit;
+    if taken { Err(conflict(words, letter, group, code)) } else { Ok(()) }
+}
+
+#[cold]
+fn conflict(words: &Words, letter: char, group: u8, code: Code) -> Fault {
+    let (all, group_of): (_, fn(u16) -> u8) = if letter == 'G' {
+        (words.g.all(), |tenths| codes::preparatory(tenths).0)
+    } else {
+        (words.m.all(), |tenths| codes::miscellaneous(tenths / 10).0)
+    };
+    let first = all.iter().find(|c| group_of(c.tenths) == group).unwrap_or(&code);
     let (first, second) = (codes::name(letter, first.tenths), codes::name(letter, code.tenths));
-    Err(Fault::new(
+    Fault::new(
         code.span,
         format!("{first} and {second} in one block"),
         "at most one code of a modal group (NISTIR 6556, 3.4)",
         "take out the wrong one, or write two blocks",
-    ))
+    )
 }

@@ -27,7 +27,7 @@ impl Interpreter<'_> {
         // The Z of a return is no height at which the program works.
         self.moves.says_z = says_z;
         if through.iter().any(Option::is_some) {
-            self.travel(line, words.extent(), through, MoveKind::Rapid)?;
+            self.travel(line, words, through, MoveKind::Rapid)?;
         }
         self.at_fixed_point(line, words, code);
         Ok(())

@@ -98,6 +98,9 @@ impl Words {
 
     /// The first letter of this mask that the block has.
     pub fn first(&self, mask: u32) -> Option<u8> {
+        if !self.any(mask) {
+            return None;
+        }
         (b'A'..=b'Z').find(|&l| self.seen & mask & bit(l) != 0)
     }
 
@@ -106,7 +109,7 @@ impl Words {
         self.seen & !bit(b'N') == 0 && self.g.count == 0 && self.m.count == 0
     }
 
-    /// From its first to its last marked word, for faults of the whole block.
+    /// From its first to its last marked word, for faults of the whole block. Slow: for messages only.
     pub fn extent(&self) -> Span {
         let letters = (b'A'..=b'Z').filter(|&l| self.seen & bit(l) != 0).map(|l| self.span(l));
         let codes = self.g.all().iter().chain(self.m.all()).map(|c| c.span);
@@ -136,7 +139,7 @@ impl Words {
                 b'(' => comment_end(line, at)?,
                 b';' => break,
                 b'/' if self.is_empty() && self.deleted.is_none() => self.block_delete(line, at),
-                b'%' if self.is_empty() => return Ok(Content::TapeMark),
+                b'%' if self.is_empty() => return tape_mark(line, at),
                 _ => return Err(unread::character(line, at)),
             };
         }
@@ -222,6 +225,19 @@ fn comment_end(line: &[u8], at: usize) -> Result<usize, Fault> {
     if nested && stray { Err(unread::nested_comment(line, at)) } else { Ok(end) }
 }
 
+/// A tape mark; a program number (`%100`, `%O100`: common practice, no single source) or a comment may
+/// follow it.
+fn tape_mark(line: &[u8], at: usize) -> Result<Content, Fault> {
+    let rest = line.get(at + 1..).unwrap_or_default().trim_ascii();
+    let number = rest.strip_prefix(b"O").unwrap_or(rest);
+    let comment = matches!(number.first(), Some(b'(' | b';'));
+    if comment || number.iter().all(u8::is_ascii_digit) {
+        Ok(Content::TapeMark)
+    } else {
+        Err(unread::words_after_mark(line, at))
+    }
+}
+
 fn twice(letter: u8, span: Span) -> Fault {
     let letter = char::from(letter);
     Fault::new(
@@ -292,6 +308,9 @@ mod tests {
         assert!((words.get(b'X').unwrap() - 5.0).abs() < 1e-15);
         assert!(read("N10 / ").is_empty());
         assert!(read("(Block-X: G1 X5)").is_empty());
+        for mark in ["%", " % ", "%O100", "%100 ", "% (part)"] {
+            assert_eq!(Words::default().read(mark.as_bytes()), Ok(Content::TapeMark), "{mark}");
+        }
     }
 
     #[test]
@@ -332,6 +351,8 @@ mod tests {
             (b"G1.25", "G code"),
             (b"G-1", "G code"),
             (b"G1 / X5", "slash"),
+            (b"% G1 X5", "tape mark"),
+            (b"G1 X5 %", "tape mark"),
         ] {
             let fault = fault(line);
             let text = String::from_utf8_lossy(line);

@@ -100,9 +100,11 @@ fn radius_format_takes_the_short_way_for_plus_and_the_long_way_for_minus() {
     assert!(near(short.radius(), 20.0) && short.sweep() < 0.0 && short.sweep() > -PI);
     let long = last_arc("G21 G0 X0 Y0 Z0\nG17 G2 x10 y15 r-20 z5\nM2");
     assert!(near(short.sweep() + long.sweep(), -TAU));
-    // The o of the report's C.1: from (64, 4) to (69, 4) with R4.
+    // Appendix C.1, the arc of its letter r: from (64, 4) to (69, 4) with R4, 2 asin(2.5 / 4) of turn; with
+    // the letter's stem of 6 the length is 11.4010522635.
     let o = last_arc("G21 G0 X64 Y4\nG3 X69 R4\nM2");
-    assert!((o.sweep().abs().to_degrees() - 77.3643748970).abs() < 1e-9);
+    assert!(near(o.sweep().abs(), 2.0 * 0.625_f64.asin()));
+    assert!((o.length() + 6.0 - 11.401_052_263_5).abs() < 1e-10);
     let center_height = (16.0_f64 - 6.25).sqrt();
     assert!(near(o.center().x, 66.5) && near((o.center().y - 4.0).abs(), center_height));
 }

@@ -119,3 +119,9 @@ fn several_errors_are_shown_and_reading_stops_at_twenty() {
     assert!(problems[20].found.contains("too many errors"));
     assert_eq!(problems[19].place.line, Some(40));
 }
+
+#[test]
+fn a_program_whose_only_moves_are_at_unknown_heights_is_refused() {
+    let problems = refused(b"G21 G0 Z5\nG91 G28 Z0\nG90 G0 X5 Y5\nM30");
+    assert!(problems[0].found.contains("no move"), "{}", shown(&problems));
+}

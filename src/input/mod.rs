@@ -4,6 +4,7 @@
 
 pub mod drawing;
 pub mod problem;
+pub mod program;
 
 pub use problem::{Place, Problem, Severity};
 

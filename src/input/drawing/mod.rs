@@ -2,6 +2,8 @@
 //! names. Every reader of a drawing gives the same [`Drawing`]; nothing is moved, turned or chosen
 //! here beyond the layers which the user asked for.
 
+pub mod svg;
+
 use crate::geometry::Contour;
 use crate::part::Origin;
 use crate::program::Unit;

@@ -8,9 +8,11 @@ mod finish;
 pub mod join;
 pub mod loops;
 mod nodes;
+pub mod svg;
 
 pub use csv::read_csv;
 pub use dxf::read_dxf;
+pub use svg::read_svg;
 
 use crate::geometry::Contour;
 use crate::part::Origin;

@@ -315,3 +315,6 @@ fn crossing(a: &Law, b: &Law, lo: f64, hi: f64) -> Option<f64> {
     }
     Some(x1.clamp(lo, hi))
 }
+
+#[cfg(test)]
+mod tests;

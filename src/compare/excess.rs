@@ -106,8 +106,13 @@ impl Judge {
             let Some(peak) = scan.peak_in(over, true) else {
                 continue;
             };
-            let within = |o: &Over| o.from <= peak.position && peak.position <= o.to;
-            if peak.size > self.clearances()[1] && !taken.iter().any(within) {
+            // Stretches over the limit of excess do not overlap: the last that begins before the crest.
+            let covered = |position: f64| {
+                let next = taken.partition_point(|o| o.from <= position);
+                taken[..next].last().is_some_and(|o| position <= o.to)
+            };
+            let covered = covered(peak.position) || covered(peak.position + scan.length);
+            if peak.size > self.clearances()[1] && !covered {
                 out.excesses.push(self.finding(path, scan, over.from, over.to, &peak));
             }
         }

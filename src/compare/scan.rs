@@ -105,12 +105,12 @@ impl Scan {
 
     /// Greatest peak in `over` that is a crest, or is none.
     pub(super) fn peak_in(&self, over: &Over, crest: bool) -> Option<Peak> {
-        let runs_over = over.to - self.length;
-        let inside = |p: &&Peak| {
-            p.crest.is_some() == crest
-                && ((over.from <= p.position && p.position <= over.to) || p.position <= runs_over)
-        };
-        self.peaks.iter().filter(inside).copied().reduce(|a, b| if b.size > a.size { b } else { a })
+        let until = |to: f64| self.peaks.partition_point(|p| p.position <= to);
+        let from = self.peaks.partition_point(|p| p.position < over.from);
+        let direct = self.peaks.get(from..until(over.to)).unwrap_or_default();
+        let round = self.peaks.get(..until(over.to - self.length)).unwrap_or_default();
+        let kind = direct.iter().chain(round).filter(|p| p.crest.is_some() == crest).copied();
+        kind.reduce(|a, b| if b.size > a.size { b } else { a })
     }
 }
 
@@ -149,6 +149,8 @@ impl Scanner<'_> {
         if let (Some(a), Some(b)) = (opening, last) {
             self.ends(path.is_closed(), &a, &b, &mut scan);
         }
+        // Only the peak over the start of a loop comes out of turn.
+        scan.peaks.sort_by(|a, b| a.position.total_cmp(&b.position));
         if path.is_closed() {
             let length = scan.length;
             scan.over.iter_mut().for_each(|o| join_round(o, length));

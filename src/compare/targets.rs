@@ -59,6 +59,11 @@ impl Targets {
         self.segments.is_empty()
     }
 
+    #[cfg(test)]
+    pub(super) fn len(&self) -> usize {
+        self.segments.len()
+    }
+
     pub(super) const fn greatest_radius(&self) -> f64 {
         self.greatest_radius
     }

@@ -5,6 +5,7 @@
 
 mod along;
 mod excess;
+mod folds;
 mod gouge;
 mod law;
 mod passes;
@@ -231,6 +232,7 @@ pub fn compare(part: &Part, cutting: &DiscFamily, rapids: &DiscFamily, request: 
         only_visited: request.only_visited,
     };
     let passes = Passes::new(cutting);
+    out.folds = folds::folds(cutting, &walls, request.gouge + bound, &request.tolerances);
     let tracer = Tracer::new(&moves, &request.tolerances);
     let mut scanner =
         Scanner { walls: &walls, moves: &moves, passes: &passes, tracer, limits: judge.clearances() };

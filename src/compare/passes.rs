@@ -41,6 +41,17 @@ impl Passes {
         Self { cut, before, loops }
     }
 
+    /// Do two moves belong to one uninterrupted cut?
+    pub(super) fn same_cut(&self, a: usize, b: usize) -> bool {
+        self.cut[a] == self.cut[b]
+    }
+
+    /// Way along the path from the end of move `a` to the start of the later move `b` of one cut.
+    pub(super) fn way_between(&self, a: usize, b: usize) -> f64 {
+        let end = self.before.get(a + 1).copied().filter(|_| a < b).unwrap_or(f64::INFINITY);
+        (self.before[b] - end).max(0.0)
+    }
+
     /// Does the cutter go from the place `a` (move, way run along it) to `b` by no longer way than half
     /// a turn of radius `rho`, without interruption? Neighbouring moves of one cut always do.
     pub(super) fn follow(&self, a: (usize, f64), b: (usize, f64), rho: f64) -> bool {

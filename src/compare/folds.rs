@@ -22,14 +22,13 @@
 
 use std::f64::consts::{FRAC_PI_2, PI, TAU};
 
-use crate::geometry::{BoxIndex, Point, Rect, Segment, Vec2};
+use crate::geometry::{BoxIndex, Crossing, Meeting, MeetingKind, Point, Rect, Segment, Turn, Vec2, crossing};
 use crate::tolerance::Tolerances;
 use crate::view::DiscFamily;
 
 use super::law::{Course, Law};
 use super::passes::Passes;
 use super::side::{Walls, Where};
-use super::targets::{Feature, Targets};
 use super::{Fold, FoldKind};
 
 /// Turns of less than this in all are none: rounding turns short moves by more than a few degrees.
@@ -38,7 +37,11 @@ const LEAST_TURN: f64 = PI / 6.0;
 
 /// A radius must be smaller than the cutter's by this part of it: rolling round an outside corner the
 /// path turns with the cutter's radius exactly, as written digits give it.
-const TIGHTER: f64 = 1e-3;
+const TIGHTER_ARC: f64 = 1e-3;
+
+/// The same for short lines, whose turns feel the last written digit more: half a thousandth at each
+/// end of a chord that turns a tenth of a radian changes its radius by about this much.
+const TIGHTER_LINE: f64 = 0.02;
 
 /// The folds of the path of `family` that matter to the part, in its order. `reach` is how far
 /// beyond the cutter's radius the part still counts as touched.
@@ -68,8 +71,8 @@ pub(super) fn folds(family: &DiscFamily, walls: &Walls, reach: f64, tolerances: 
 struct Run {
     /// The moves of the run, without those that have no length.
     members: Vec<usize>,
-    /// +1 to the left, -1 to the right.
-    side: f64,
+    /// To which side it turns.
+    side: Turn,
     /// Turn in all, radians, never negative.
     turn: f64,
     /// Radius of the tightest turn.
@@ -95,7 +98,7 @@ fn tight_turns(family: &DiscFamily, passes: &Passes) -> Vec<Run> {
     let long: Vec<usize> =
         (0..family.moves.len()).filter(|&i| family.moves[i].segment.length() > 0.0).collect();
     let mut runs: Vec<Run> = Vec::new();
-    let mut last: Option<(usize, f64)> = None;
+    let mut last: Option<(usize, Turn)> = None;
     for (position, &i) in long.iter().enumerate() {
         let m = &family.moves[i];
         let neighbour =
@@ -103,17 +106,22 @@ fn tight_turns(family: &DiscFamily, passes: &Passes) -> Vec<Run> {
         let before = position.checked_sub(1).and_then(|q| neighbour(long.get(q)));
         let after = neighbour(long.get(position + 1));
         let (radius, side, joint) = match (&m.segment, before, after) {
-            (Segment::Arc(a), ..) => (a.radius(), a.turn().sign(), 0.0),
+            (Segment::Arc(a), ..) => (a.radius(), a.turn(), 0.0),
             (s @ Segment::Line(_), Some(before), Some(after)) => match turns_round(before, s, after) {
-                Some((a, b)) => (s.length() / (2.0 * (0.25 * (a + b).abs()).sin()), a.signum(), b.abs()),
+                Some((a, b)) => (
+                    s.length() / (2.0 * (0.25 * (a + b).abs()).sin()),
+                    if a > 0.0 { Turn::Left } else { Turn::Right },
+                    b.abs(),
+                ),
                 None => continue,
             },
             _ => continue,
         };
-        if radius >= m.radius * (1.0 - TIGHTER) {
+        let tighter = if matches!(m.segment, Segment::Arc(_)) { TIGHTER_ARC } else { TIGHTER_LINE };
+        if radius >= m.radius * (1.0 - tighter) {
             continue;
         }
-        let entry = before.map_or(0.0, |b| turn_between(b, &m.segment) * side).max(0.0);
+        let entry = before.map_or(0.0, |b| turn_between(b, &m.segment) * side.sign()).max(0.0);
         let own = match &m.segment {
             Segment::Arc(a) => a.sweep().abs(),
             Segment::Line(_) => joint,
@@ -146,7 +154,7 @@ impl Run {
             let m = &family.moves[i];
             [0.0, 0.5, 1.0].into_iter().any(|t| {
                 let center = m.segment.point_at(t);
-                let inner = m.segment.left_normal_at(t) * self.side;
+                let inner = m.segment.left_normal_at(t) * self.side.sign();
                 touch(walls, center, m.radius + reach)
                     .is_some_and(|(w, toward)| w == Where::Material || toward.dot(inner) > 0.0)
             })
@@ -201,7 +209,7 @@ fn loops(family: &DiscFamily, passes: &Passes, tolerances: &Tolerances) -> Vec<F
         });
         later.sort_unstable();
         for j in later {
-            let Some((at, way)) = crossing_back(family, passes, i, j) else {
+            let Some((at, way)) = crossing_back(family, passes, (i, j), tolerances.coincidence) else {
                 continue;
             };
             if way <= longest {
@@ -215,26 +223,33 @@ fn loops(family: &DiscFamily, passes: &Passes, tolerances: &Tolerances) -> Vec<F
 }
 
 /// Where move `j` crosses the earlier move `i`, and the way along the path from there to there.
-fn crossing_back(family: &DiscFamily, passes: &Passes, i: usize, j: usize) -> Option<(Point, f64)> {
+///
+/// A touch crosses only where an end lies within the other move and the path goes on to its other
+/// side; where the path merely comes back to a joint of its own (a closed contour) it has closed.
+fn crossing_back(
+    family: &DiscFamily,
+    passes: &Passes,
+    (i, j): (usize, usize),
+    within: f64,
+) -> Option<(Point, f64)> {
     let (first, second) = (&family.moves[i].segment, &family.moves[j].segment);
-    let course = Course::new(second);
-    let target = Targets::new(std::iter::once((*first, 0.0)));
-    let law = target.law(0, Feature::Inside, &course);
-    let margin = 1e-9 * course.length();
-    // Places where the later move meets the line or circle of the earlier one.
-    for s in law.level(0.0, margin, course.length() * (1.0 + 1e-12)) {
-        let at = course.point(s);
-        let near = first.nearest(at);
-        let on = near.distance <= 1e-9 * (course.length() + first.length());
-        // Meeting at the very joint, or closing at the start of the earlier one, crosses nothing.
-        let proper = near.t < 1.0 && (near.t > 0.0 || s < course.length() - margin);
-        let square = first.tangent_at(near.t).cross(second.tangent_at(s / course.length())).abs() > 1e-6;
-        if on && proper && square {
-            let way = passes.way_between(i, j) + first.length() * (1.0 - near.t) + s;
-            return Some((at, way));
+    let Crossing::Points(points) = crossing(first, second, within) else {
+        return None;
+    };
+    let crosses = |m: &Meeting| match m.kind {
+        MeetingKind::Proper => true,
+        MeetingKind::Touch if 0.0 < m.t[0] && m.t[0] < 1.0 && m.t[1] >= 1.0 => {
+            let along = first.tangent_at(m.t[0]);
+            let next = family.moves.get(j + 1).filter(|_| passes.same_cut(j, j + 1));
+            next.is_some_and(|n| {
+                along.cross(second.tangent_at(1.0)) * along.cross(n.segment.tangent_at(0.0)) > 0.0
+            })
         }
-    }
-    None
+        MeetingKind::Touch => false,
+    };
+    let meeting = points.iter().filter(crosses).min_by(|a, b| a.t[1].total_cmp(&b.t[1]))?;
+    let rest = first.length() * (1.0 - meeting.t[0]) + second.length() * meeting.t[1];
+    Some((meeting.at, passes.way_between(i, j) + rest))
 }
 
 /// Greatest distance of the loop's path from its crossing.
@@ -248,3 +263,6 @@ fn width(family: &DiscFamily, i: usize, j: usize, at: Point) -> f64 {
     let reach = ends.into_iter().map(|p| (p - at).hypot()).fold(0.0, f64::max);
     inner.iter().map(|m| far(&m.segment)).fold(reach, f64::max)
 }
+
+#[cfg(test)]
+mod tests;

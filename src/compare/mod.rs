@@ -3,13 +3,33 @@
 //! Depths and heights are distances, never leftovers of region subtraction: two ways to the same edge
 //! differ by slivers of rounding, and a distance does not see them.
 
+mod along;
 mod deviation;
+mod excess;
+mod folds;
+mod gouge;
+mod law;
+mod passes;
 mod regions;
+mod scan;
+mod side;
+mod targets;
 
 pub use deviation::{DeviationSummary, deviation_summary};
 pub use regions::Regions;
 
-use crate::geometry::{Path, Point};
+use crate::geometry::{Path, Point, Segment};
+use crate::part::Part;
+use crate::tolerance::Tolerances;
+use crate::view::DiscFamily;
+
+use along::Tracer;
+use excess::Judge;
+use gouge::Follower;
+use passes::Passes;
+use scan::Scanner;
+use side::Walls;
+use targets::Targets;
 
 /// A figure and how far the truth may lie from it, both lengths: the interval is
 /// `size - bound ..= size + bound`.
@@ -151,3 +171,109 @@ pub struct Comparison {
     /// `None` when it was not looked for, or no cutter comes near.
     pub deviation: Option<DeviationSummary>,
 }
+
+/// What must be cut.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Clear {
+    /// The contour.
+    Wall,
+    /// The contour, and every opening of the part over its whole area.
+    Area,
+}
+
+/// What a comparison is asked.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Request {
+    /// Greatest gouge allowed, a length.
+    pub gouge: f64,
+    /// Greatest excess allowed, a length.
+    pub excess: f64,
+    /// Greatest cusp allowed, a length.
+    pub cusp: f64,
+    /// What must be cut.
+    pub clear: Clear,
+    /// Leave out paths of the contour that the program never comes near.
+    pub only_visited: bool,
+    /// Greatest distance between a commanded curve and the arc kept for it, a length.
+    pub program_bound: f64,
+    /// Lengths for coincidence and for the search of figures.
+    pub tolerances: Tolerances,
+}
+
+/// Bound of every figure of a comparison, a length: what reading the drawing and the program cost,
+/// arcs whose ends lie off their circle, and arithmetic.
+#[must_use]
+pub fn figure_bound(part: &Part, cutting: &DiscFamily, request: &Request) -> f64 {
+    let off = |s: &Segment| targets::residual(s);
+    let drawn = part.contour.segments().map(|(_, s)| off(s)).fold(0.0, f64::max);
+    let moved = cutting.moves.iter().map(|m| off(&m.segment)).fold(0.0, f64::max);
+    // Ties are settled to `figure`; formulas and side slips each cost less than `coincidence`.
+    let arithmetic = request.tolerances.figure + 4.0 * request.tolerances.coincidence;
+    part.contour.bound() + request.program_bound + drawn + moved + arithmetic
+}
+
+/// Compares what the moves of `cutting` leave with `part`, both ways. Material is on the left of every
+/// path of the part's contour. Regions of gouges and excesses are left out.
+///
+/// Without cutting moves nothing is reached: every path of the contour is then listed as never
+/// visited, and there are no figures of excess, because no distance from nothing exists.
+#[must_use]
+pub fn compare(part: &Part, cutting: &DiscFamily, rapids: &DiscFamily, request: &Request) -> Comparison {
+    let mut out = Comparison::default();
+    let walls = Walls::new(&part.contour);
+    let bound = figure_bound(part, cutting, request);
+    cutter_past_contour(part, &walls, (cutting, rapids), request, &mut out);
+    let moves = Targets::new(cutting.moves.iter().map(|m| (m.segment, m.radius)));
+    if moves.is_empty() {
+        out.never_visited = (0..part.contour.paths().len()).collect();
+        return out;
+    }
+    let judge = Judge {
+        excess: request.excess,
+        cusp: request.cusp,
+        allowance: part.allowance,
+        bound,
+        radius: moves.greatest_radius(),
+        only_visited: request.only_visited,
+    };
+    let passes = Passes::new(cutting);
+    out.folds = folds::folds(cutting, &walls, request.gouge + bound, &request.tolerances);
+    let tracer = Tracer::new(&moves, &request.tolerances);
+    let mut scanner =
+        Scanner { walls: &walls, moves: &moves, passes: &passes, tracer, limits: judge.clearances() };
+    excess::contour_not_reached(&part.contour, &mut scanner, &judge, &mut out);
+    out.excesses.sort_by(|a, b| b.height.size.total_cmp(&a.height.size));
+    out
+}
+
+/// Gouges and rapids.
+fn cutter_past_contour(
+    part: &Part,
+    walls: &Walls,
+    (cutting, rapids): (&DiscFamily, &DiscFamily),
+    request: &Request,
+    out: &mut Comparison,
+) {
+    let lengths: Vec<(f64, bool)> =
+        part.contour.paths().iter().map(|p| (p.length(), p.is_closed())).collect();
+    let bound = figure_bound(part, cutting, request);
+    let follow = |family: &DiscFamily, threshold: f64| {
+        let mut follower = Follower::new(walls, &request.tolerances, threshold, part.allowance);
+        follower.follow(family);
+        follower
+    };
+    let cut = follow(cutting, request.gouge - bound);
+    if !cutting.moves.is_empty() {
+        out.worst_gouge = Some(Figure { size: cut.greatest, bound });
+    }
+    out.gouges = cut.found.iter().map(|r| r.gouge(bound, &lengths)).collect();
+    out.gouges.sort_by(|a, b| b.depth.size.total_cmp(&a.depth.size));
+    let bound = figure_bound(part, rapids, request);
+    // A rapid that follows the finished wall within the limit only touches it.
+    let hit = follow(rapids, request.gouge.max(bound));
+    out.rapids = hit.found.iter().map(|r| r.rapid(bound)).collect();
+    out.rapids.sort_by(|a, b| b.depth.size.total_cmp(&a.depth.size));
+}
+
+#[cfg(test)]
+mod tests;

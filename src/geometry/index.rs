@@ -108,6 +108,25 @@ impl BoxIndex {
         }
     }
 
+    /// Calls `visit` with every item whose box lies within `radius` of `p`, in a fixed order. Unlike
+    /// [`BoxIndex::search`] it leaves out what only the corners of a window would reach.
+    pub fn within(&self, p: Point, radius: f64, mut visit: impl FnMut(usize)) {
+        if self.is_empty() {
+            return;
+        }
+        let mut pile = vec![(self.levels.len() - 2, self.boxes.len() - 1)];
+        while let Some((level, node)) = pile.pop() {
+            if distance_to(self.boxes[node], p) > radius {
+                continue;
+            }
+            if level == 0 {
+                visit(self.items[node] as usize);
+            } else {
+                pile.extend(self.children(level, node).map(|child| (level - 1, child)));
+            }
+        }
+    }
+
     /// The item nearest to `p` among those nearer than `within`, by `distance(item)`, which must not
     /// be less than the distance of `p` from the item's box. Equal distances: the lowest position.
     #[must_use]
@@ -212,6 +231,20 @@ mod tests {
             index.search(window, |i| found.push(i));
             found.sort_unstable();
             let scan: Vec<usize> = (0..n).filter(|&i| meets(all[i], window)).collect();
+            assert_eq!(found, scan, "{n} boxes");
+        }
+    }
+
+    #[test]
+    fn within_finds_exactly_the_boxes_that_a_scan_finds() {
+        for n in [0, 1, 9, 65, 1000] {
+            let all = boxes(n);
+            let index = BoxIndex::new(&all);
+            let p = Point::new(40.0, 52.0);
+            let mut found = Vec::new();
+            index.within(p, 17.0, |i| found.push(i));
+            found.sort_unstable();
+            let scan: Vec<usize> = (0..n).filter(|&i| distance_to(all[i], p) <= 17.0).collect();
             assert_eq!(found, scan, "{n} boxes");
         }
     }

@@ -1,0 +1,280 @@
+//! One path of the contour, run along once: where does the clearance from the sweep exceed a limit, and
+//! where are its peaks?
+//!
+//! The clearance D(q) along the path is given piece by piece in closed form ([`super::along`]); so are
+//! the places where it crosses a limit, and its local maxima: inside a piece, or at a joint of pieces
+//! where it rises before and falls after.
+
+use crate::geometry::{Path, Point};
+
+use super::along::{Piece, Tracer};
+use super::law::Course;
+use super::passes::Passes;
+use super::side::Walls;
+use super::targets::{Feature, Targets};
+
+/// Slopes between plus and minus this count as level. A slope is a cosine of an angle; rounding of
+/// laws leaves it good to far better than this.
+const LEVEL: f64 = 1e-9;
+
+/// Joints that turn by less than this are smooth: tangent arcs as drawings give them, and the chords
+/// of a curve, but no corner. Common practice, no single source.
+const SMOOTH: f64 = 0.2;
+
+/// A local maximum of the clearance along a path.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct Peak {
+    /// Way along the path.
+    pub(super) position: f64,
+    /// The clearance.
+    pub(super) size: f64,
+    pub(super) at: Point,
+    /// Position of the nearest move.
+    pub(super) nearest: usize,
+    /// The two moves that meet there, when it is a crest between two passes.
+    pub(super) crest: Option<(usize, usize)>,
+}
+
+/// A maximal stretch over a limit, with its greatest clearance.
+#[derive(Clone, Copy, Debug)]
+pub(super) struct Over {
+    pub(super) from: f64,
+    pub(super) to: f64,
+    pub(super) greatest: Peak,
+}
+
+/// What one run along a path found.
+#[derive(Debug, Default)]
+pub(super) struct Scan {
+    /// Length of the path.
+    pub(super) length: f64,
+    /// Least clearance anywhere on it.
+    pub(super) least: f64,
+    /// Greatest clearance anywhere on it.
+    pub(super) greatest: Option<Peak>,
+    /// Greatest peak that is no crest, and greatest crest.
+    pub(super) greatest_plain: Option<Peak>,
+    /// See `greatest_plain`.
+    pub(super) greatest_crest: Option<Peak>,
+    /// Peaks above the lowest limit, in order.
+    pub(super) peaks: Vec<Peak>,
+    /// Stretches over each limit, in order.
+    pub(super) over: [Vec<Over>; 2],
+}
+
+/// The questions put to every path.
+pub(super) struct Scanner<'a> {
+    pub(super) walls: &'a Walls,
+    pub(super) moves: &'a Targets,
+    pub(super) passes: &'a Passes,
+    pub(super) tracer: Tracer<'a>,
+    pub(super) limits: [f64; 2],
+}
+
+/// A piece with the course it lies on, for looking back from the next one.
+#[derive(Clone, Copy)]
+struct Link {
+    piece: Piece,
+    course: Course,
+    /// Way along the path at the start of the course.
+    start: f64,
+    /// Position of the segment among the walls.
+    segment: usize,
+}
+
+impl Link {
+    fn peak(&self, s: f64) -> Peak {
+        Peak {
+            position: self.start + s,
+            size: self.piece.law.value(s),
+            at: self.course.point(s),
+            nearest: self.piece.target,
+            crest: None,
+        }
+    }
+}
+
+impl Scan {
+    fn note(&mut self, peak: Peak, lowest_limit: f64) {
+        let slot = if peak.crest.is_some() { &mut self.greatest_crest } else { &mut self.greatest_plain };
+        keep_greater(slot, peak);
+        if peak.size > lowest_limit {
+            self.peaks.push(peak);
+        }
+    }
+
+    /// Greatest peak in `over` that is a crest, or is none.
+    pub(super) fn peak_in(&self, over: &Over, crest: bool) -> Option<Peak> {
+        let until = |to: f64| self.peaks.partition_point(|p| p.position <= to);
+        let from = self.peaks.partition_point(|p| p.position < over.from);
+        let direct = self.peaks.get(from..until(over.to)).unwrap_or_default();
+        let round = self.peaks.get(..until(over.to - self.length)).unwrap_or_default();
+        let kind = direct.iter().chain(round).filter(|p| p.crest.is_some() == crest).copied();
+        kind.reduce(|a, b| if b.size > a.size { b } else { a })
+    }
+}
+
+fn keep_greater(slot: &mut Option<Peak>, peak: Peak) {
+    if slot.is_none_or(|old| peak.size > old.size) {
+        *slot = Some(peak);
+    }
+}
+
+impl Scanner<'_> {
+    /// Runs along `path`, whose segments are `walls` from position `first` on.
+    pub(super) fn scan(&mut self, path: &Path, first: usize) -> Scan {
+        let mut scan = Scan { least: f64::INFINITY, ..Scan::default() };
+        let mut pieces = Vec::new();
+        let (mut opening, mut last): (Option<Link>, Option<Link>) = (None, None);
+        let drawn = path.segments().iter().filter(|s| s.length() > 0.0);
+        for (segment, s) in (first..).zip(drawn) {
+            let course = Course::new(s);
+            self.tracer.trace(&course, &mut pieces);
+            let start = scan.length;
+            for &piece in &pieces {
+                let link = Link { piece, course, start, segment };
+                self.take(&link, &mut scan);
+                if !piece.decided {
+                    continue;
+                }
+                self.inner_peaks(&link, &mut scan);
+                match &last {
+                    Some(before) => self.joint(before, &link, &mut scan),
+                    None => opening = Some(link),
+                }
+                last = Some(link);
+            }
+            scan.length += course.length();
+        }
+        if let (Some(a), Some(b)) = (opening, last) {
+            self.ends(path.is_closed(), &a, &b, &mut scan);
+        }
+        // Only the peak over the start of a loop comes out of turn.
+        scan.peaks.sort_by(|a, b| a.position.total_cmp(&b.position));
+        if path.is_closed() {
+            let length = scan.length;
+            scan.over.iter_mut().for_each(|o| join_round(o, length));
+        }
+        scan
+    }
+
+    /// Enters the extremes of one piece and its parts over the limits.
+    fn take(&self, link: &Link, scan: &mut Scan) {
+        let (from, to, law) = (link.piece.from, link.piece.to, &link.piece.law);
+        scan.least = scan.least.min(law.least(from, to).1);
+        let greatest = law.greatest(from, to);
+        keep_greater(&mut scan.greatest, link.peak(greatest.0));
+        for (limit, over) in self.limits.iter().zip(&mut scan.over) {
+            if greatest.1 <= *limit {
+                continue;
+            }
+            let mut low = from;
+            for high in law.level(*limit, from, to).into_iter().chain([to]) {
+                if law.value(0.5 * (low + high)) > *limit {
+                    let (s, _) = law.greatest(low, high);
+                    let new = Over { from: link.start + low, to: link.start + high, greatest: link.peak(s) };
+                    append(over, new);
+                }
+                low = high;
+            }
+        }
+    }
+
+    /// Peaks strictly inside a piece.
+    fn inner_peaks(&self, link: &Link, scan: &mut Scan) {
+        let (from, to, law) = (link.piece.from, link.piece.to, &link.piece.law);
+        let mut places = law.extremes(from, to);
+        if places.is_empty() {
+            return;
+        }
+        places.sort_by(f64::total_cmp);
+        let values: Vec<f64> =
+            [from].into_iter().chain(places.iter().copied()).chain([to]).map(|s| law.value(s)).collect();
+        for (s, v) in places.iter().zip(values.windows(3)) {
+            if v[1] >= v[0] && v[1] >= v[2] {
+                scan.note(link.peak(*s), self.lowest_limit());
+            }
+        }
+    }
+
+    fn lowest_limit(&self) -> f64 {
+        self.limits[0].min(self.limits[1])
+    }
+
+    /// Is the joint of two pieces a peak, and is it a crest?
+    fn joint(&self, before: &Link, after: &Link, scan: &mut Scan) {
+        let (end, start) = (before.piece.to, after.piece.from);
+        let rise = before.piece.law.slope(end);
+        let fall = after.piece.law.slope(start);
+        if rise < -LEVEL || fall > LEVEL {
+            return;
+        }
+        let mut peak = after.peak(start);
+        let sharp = rise > LEVEL && fall < -LEVEL;
+        if sharp && self.is_smooth(before, after) {
+            peak.crest = self.crest(before, after, peak.at);
+        }
+        scan.note(peak, self.lowest_limit());
+    }
+
+    /// Is the contour smooth where `before` meets `after`, and open enough for the cutter?
+    fn is_smooth(&self, before: &Link, after: &Link) -> bool {
+        let radius = self.moves.radius(after.piece.target);
+        let tight = |l: &Link| self.walls.targets.segment(l.segment).curvature() * radius < -1.0;
+        let turns = before.segment != after.segment
+            && self.walls.turn_at(after.segment, Feature::Start).abs() > SMOOTH;
+        !turns && !tight(before) && !tight(after)
+    }
+
+    /// The two moves, when they do not follow one another.
+    fn crest(&self, before: &Link, after: &Link, at: Point) -> Option<(usize, usize)> {
+        let (a, b) = (before.piece.target, after.piece.target);
+        let place = |k: usize| {
+            let near = self.moves.segment(k).nearest(at);
+            ((k, near.t * self.moves.segment(k).length()), near.distance)
+        };
+        let ((a_place, rho), (b_place, _)) = (place(a), place(b));
+        (a != b && !self.passes.follow(a_place, b_place, rho)).then_some((a.min(b), a.max(b)))
+    }
+
+    /// The joint over the start of a loop, or the two ends of a chain.
+    fn ends(&self, closed: bool, opening: &Link, last: &Link, scan: &mut Scan) {
+        if closed {
+            self.joint(last, opening, scan);
+            return;
+        }
+        if opening.piece.law.slope(opening.piece.from) <= LEVEL {
+            scan.note(opening.peak(opening.piece.from), self.lowest_limit());
+        }
+        if last.piece.law.slope(last.piece.to) >= -LEVEL {
+            scan.note(last.peak(last.piece.to), self.lowest_limit());
+        }
+    }
+}
+
+/// Adds a stretch, joined to the last one where they touch.
+fn append(list: &mut Vec<Over>, new: Over) {
+    match list.last_mut() {
+        Some(last) if new.from <= last.to => {
+            last.to = new.to;
+            if new.greatest.size > last.greatest.size {
+                last.greatest = new.greatest;
+            }
+        }
+        _ => list.push(new),
+    }
+}
+
+/// Joins the last stretch of a loop to the first where both reach the loop's start.
+fn join_round(list: &mut Vec<Over>, length: f64) {
+    if list.len() < 2 || list[0].from > 0.0 || list[list.len() - 1].to < length {
+        return;
+    }
+    let first = list.remove(0);
+    if let Some(last) = list.last_mut() {
+        last.to = length + first.to;
+        if first.greatest.size > last.greatest.size {
+            last.greatest = first.greatest;
+        }
+    }
+}

@@ -69,8 +69,11 @@ pub struct ProgramOptions {
 ///
 /// # Errors
 /// Up to 20 placed errors, then warnings, when anything in the text cannot be followed, or when
-/// it commands no move.
+/// it commands no move, or when the arc tolerance is no length.
 pub fn read_iso(text: &[u8], file: &str, options: &ProgramOptions) -> Result<Reading<Program>, Refusal> {
+    if let Some(tolerance) = options.arc_tolerance.filter(|t| !(0.0..f64::INFINITY).contains(t)) {
+        return Err(vec![no_tolerance(file, tolerance)]);
+    }
     let text = lines::screen(text).map_err(|no_text| vec![no_program(file, no_text)])?;
     let mut reader = Reader {
         control: Interpreter::new(file, options),
@@ -185,6 +188,15 @@ impl Reader<'_> {
         }
         Ok(Reading { value: program, problems: faults.warnings(of_file) })
     }
+}
+
+fn no_tolerance(file: &str, tolerance: f64) -> Problem {
+    Problem::error(
+        Place::file(file),
+        format!("{tolerance} is no arc tolerance"),
+        "a length of 0 or more",
+        "give --arc-tolerance as a length, such as 0.005",
+    )
 }
 
 fn unit_assumed(file: &str) -> Problem {

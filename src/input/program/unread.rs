@@ -145,9 +145,7 @@ pub(super) fn character(line: &[u8], at: usize) -> Fault {
             "/ only at the start of a block, for block delete",
             "take the slash out, or put it first if the block is to be skipped by the switch",
         ),
-        Some(b'%') => {
-            Fault::new(span, "a tape mark % after words", "% on a line of its own", "put % on its own line")
-        }
+        Some(b'%') => words_after_mark(line, at),
         Some(b',') => Fault::new(
             span,
             "a comma",
@@ -174,6 +172,17 @@ pub(super) fn character(line: &[u8], at: usize) -> Fault {
              if many lines are like this, the file is damaged or no program",
         ),
     }
+}
+
+/// A tape mark that shares its line with words.
+#[cold]
+pub(super) fn words_after_mark(line: &[u8], at: usize) -> Fault {
+    Fault::new(
+        Span::new(at, (at + 1).min(line.len())),
+        "a tape mark % in one line with words",
+        "% on a line of its own",
+        "put % on its own line: what shares its line is not executed",
+    )
 }
 
 /// An O word that is not the first of its block.

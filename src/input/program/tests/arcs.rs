@@ -65,6 +65,10 @@ fn a_wider_arc_tolerance_lets_an_arc_pass_and_says_so() {
     assert!((reading.value.bound - 0.00105).abs() < 1e-9);
     let narrow = ProgramOptions { arc_tolerance: Some(0.001), ..ProgramOptions::default() };
     assert!(read_iso(b"G21 G0 X0 Y0\nG2 X20.0019 I10\nM2", "a", &narrow).is_err());
+    for wrong in [f64::NAN, -1.0, f64::INFINITY] {
+        let options = ProgramOptions { arc_tolerance: Some(wrong), ..ProgramOptions::default() };
+        assert!(shown(&read_iso(b"G0 X0 Y0", "a", &options).unwrap_err()).contains("no arc tolerance"));
+    }
 }
 
 #[test]

@@ -50,9 +50,20 @@ pub fn sweep(family: &DiscFamily) -> Result<SweptRegion, SweepError> {
     let far = bounds.x0.abs().max(bounds.x1.abs()).max(bounds.y0.abs()).max(bounds.y1.abs());
     let extent = 0.5 * bounds.width().max(bounds.height());
     // Far from the origin the coordinates themselves were rounded before they came here.
-    let tolerances = Tolerances::for_extent(extent.max(far * ROUNDING_SHARE));
-    let (local, sources, residual) = seat(family, shift, tolerances.coincidence);
-    let mut region = sweep_local(&local, &tolerances).map_err(|e| SweepError { at: e.at - shift })?;
+    let mut extent = extent.max(far * ROUNDING_SHARE);
+    let (local, sources, residual) = seat(family, shift, Tolerances::for_extent(extent).coincidence);
+    let mut tries = 0;
+    let (mut region, tolerances) = loop {
+        let tolerances = Tolerances::for_extent(extent);
+        match sweep_local(&local, &tolerances) {
+            Ok(region) => break (region, tolerances),
+            Err(e) if tries == COARSER_TRIES => return Err(SweepError { at: e.at - shift }),
+            Err(_) => {
+                tries += 1;
+                extent *= COARSER;
+            }
+        }
+    };
     for piece in region.loops.iter_mut().flat_map(|l| &mut l.pieces) {
         piece.segment = shifted(&piece.segment, -shift);
         piece.source = sources.get(piece.source).map_or(0, |&s| s as usize);
@@ -60,6 +71,13 @@ pub fn sweep(family: &DiscFamily) -> Result<SweptRegion, SweepError> {
     region.bound = 8.0 * tolerances.coincidence + 4.0 * f64::EPSILON * far + 2.0 * residual;
     Ok(region)
 }
+
+/// Moves that miss one another by about the coincidence length can leave the edge ambiguous. Then a
+/// coarser length settles which of them are one; the region's bound says what that cost.
+const COARSER: f64 = 16.0;
+
+/// How often it may be made coarser: the coincidence length stays below 2e-8 of the extent.
+const COARSER_TRIES: u32 = 4;
 
 /// Coordinates of size `far` are rounded by `far` times 1.1e-16; [`Tolerances::for_extent`] allows 4e-13
 /// of the extent. This share of `far` as extent allows eighteen roundings.

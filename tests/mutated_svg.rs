@@ -13,7 +13,7 @@ const DRAWINGS: [&str; 6] = [
     "<!DOCTYPE svg [<!ENTITY n 'M0 0C1 2 3 4 5 6'>]><svg viewBox='0 0 9 9'><path d='&n;Q7 8 9 9H3V2Z'/></svg>",
     "<svg><style>g{display:none}</style><switch><g style='display:inline'><line x1='1' x2='2'/></g></switch>\
      <svg x='1' width='5' height='5' viewBox='0 0 1 1' preserveAspectRatio='xMaxYMin slice'><circle r='1'/></svg></svg>",
-    "<svg height='3cm' viewBox='-1 -1 5 5'><text>\u{e4}\u{20ac}</text><path d='M0,0A1e2 5 30 1 0 3 4zL1 1'/><use/></svg>",
+    "<svg height='3cm' viewBox='-1 -1 5 5'><text>\u{e4}\u{20ac}</text><path d='M0,0A1e2 5 30 1 0 3 4zL1 1' id='p'/><use href='#p' x='4'/></svg>",
 ];
 
 const SNIPPETS: [&str; 28] = [

@@ -3,7 +3,7 @@
 
 use sweptedge::input::Severity;
 use sweptedge::input::drawing::DrawingOptions;
-use sweptedge::input::drawing::svg::read_svg;
+use sweptedge::input::drawing::svg::{read_subpaths, read_svg};
 
 const DRAWINGS: [&str; 6] = [
     "<svg xmlns='http://www.w3.org/2000/svg' width='20mm' height='10mm' viewBox='0 0 20 10'><g id='a' \
@@ -87,7 +87,7 @@ fn mutated(rng: &mut fastrand::Rng, drawing: &str) -> Vec<u8> {
 #[test]
 fn drawings_before_mutation_are_all_read() {
     for drawing in DRAWINGS {
-        let read = read_svg(drawing.as_bytes(), "whole.svg", &DrawingOptions::default());
+        let read = read_subpaths(drawing.as_bytes(), "whole.svg", &DrawingOptions::default());
         assert!(read.is_ok(), "{drawing}: {read:?}");
     }
 }
@@ -100,9 +100,12 @@ fn hundred_thousand_mutated_drawings_never_panic() {
     for _ in 0..100_000 {
         let drawing = DRAWINGS[rng.usize(0..DRAWINGS.len())];
         let bytes = mutated(&mut rng, drawing);
-        match read_svg(&bytes, "mutated.svg", &options) {
+        match read_subpaths(&bytes, "mutated.svg", &options) {
             Ok(reading) => {
                 taken += 1;
+                if let Err(problems) = read_svg(&bytes, "mutated.svg", &options) {
+                    assert!(problems.iter().any(|p| p.severity == Severity::Error));
+                }
                 let contour = &reading.value.contour;
                 assert_eq!(contour.paths().len(), reading.value.origins.len());
                 let b = contour.bounds();

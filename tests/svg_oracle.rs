@@ -6,7 +6,7 @@ use resvg::tiny_skia::{PathSegment, Point};
 use resvg::usvg::{Group, Node, Options, Tree};
 use sweptedge::geometry::Rect;
 use sweptedge::input::drawing::DrawingOptions;
-use sweptedge::input::drawing::svg::read_svg;
+use sweptedge::input::drawing::svg::read_subpaths;
 
 /// Area (positive clockwise on the screen) and box of every filled subpath under a group, in px.
 fn seen(group: &Group, area: &mut f64, bounds: &mut Option<Rect>) {
@@ -69,7 +69,7 @@ fn an_independent_reader_sees_the_same_area_and_box() {
     for (page, px) in pages {
         for drawing in DRAWINGS {
             let text = format!("<svg xmlns='http://www.w3.org/2000/svg' {page}>{drawing}</svg>");
-            let ours = read_svg(text.as_bytes(), "o.svg", &DrawingOptions::default())
+            let ours = read_subpaths(text.as_bytes(), "o.svg", &DrawingOptions::default())
                 .unwrap_or_else(|p| panic!("{text}: {p:?}"));
             let tree = Tree::from_str(&text, &Options::default()).unwrap();
             let (mut area, mut bounds) = (0.0, None);

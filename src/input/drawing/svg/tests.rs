@@ -186,8 +186,22 @@ fn closing_line_is_added_only_where_it_is_missing() {
     }
     let gap = on_page("<path d='M0 0 H10 V10 H0 V0.001 Z'/>");
     assert_eq!(paths(&gap)[0].segments().len(), 5);
-    let open = on_page("<path d='M0 0 H10 V10 H0 V0.001'/>");
+    let open = on_page("<path d='M0 0 H10 V10 H0 V2'/>");
     assert!(!paths(&open)[0].is_closed());
+}
+
+#[test]
+fn loose_lines_and_arcs_are_joined_into_a_loop() {
+    let text = format!(
+        "{OPEN}<line x1='0' y1='0' x2='10' y2='0'/><polyline points='0 10 0 0'/><path d='M0 10H10'/>\
+         <path d='M10 0A5 5 0 0 1 10.001 10'/></svg>"
+    );
+    let r = read_with(&text, &DrawingOptions::default()).unwrap();
+    assert_eq!(paths(&r).len(), 1);
+    assert!(paths(&r)[0].is_closed());
+    assert!(r.value.contour.bound() >= 5e-4, "the closed gap is in the bound");
+    let loose = read_subpaths(text.as_bytes(), "part.svg", &DrawingOptions::default()).unwrap();
+    assert_eq!(loose.value.contour.paths().len(), 4);
 }
 
 #[test]
@@ -209,7 +223,7 @@ fn pieces_without_length_are_dropped() {
 
 #[test]
 fn polygon_is_closed_and_polyline_is_open() {
-    let r = on_page("<polygon points='0,0 10,0 10,10'/><polyline points='0 0,10-5.5.5 3'/>");
+    let r = on_page("<polygon points='0,0 10,0 10,10'/><polyline points='20 30,30-5.5.5 30'/>");
     assert!(paths(&r)[0].is_closed() && !paths(&r)[1].is_closed());
     assert_eq!(paths(&r)[1].segments().len(), 2);
     assert!(refused(&format!("{OPEN}<polygon points='0 0 10 0 10'/></svg>")).found.contains("5 numbers"));

@@ -32,9 +32,15 @@ impl std::fmt::Display for SweepError {
 
 impl std::error::Error for SweepError {}
 
-/// A covered stretch is removed early only when it lies this many times deeper than the depth at which
-/// fragments are decided: the early way and the careful way then never disagree.
-const COVER_MARGIN: f64 = 16.0;
+/// A covered stretch is removed early only when it lies deeper than this many coincidence lengths: the
+/// early way and the careful way then never disagree.
+const COVER_MARGIN: f64 = 128.0;
+
+/// Loops no wider than this many coincidence lengths are slivers between two decisions within rounding.
+const SLIVER: f64 = 8.0;
+
+/// Decisions worth no more than this many coincidence lengths in sum may be changed to close a loop.
+const CHANGEABLE: f64 = 512.0;
 
 /// The region which the discs of `family` cover, its edge as exact lines and arcs.
 ///
@@ -153,14 +159,14 @@ fn sweep_local(family: &DiscFamily, tolerances: &Tolerances) -> Result<SweptRegi
         .map(|f| decide(f, &strands, &shares, &raw, &clearance, tolerances))
         .collect();
     drop_twins(&mut choices, &piece_of, tolerances);
-    balance(&mut choices, &arrangement.places, 64.0 * tolerances.depth)
+    balance(&mut choices, &arrangement.places, CHANGEABLE * tolerances.coincidence)
         .map_err(|e| SweepError { at: e.at })?;
     let rings = loops(&choices, piece_of);
     let mut region = SweptRegion::default();
     for ring in rings {
         let edge = EdgeLoop { pieces: pieces(&ring, &choices, &strands, &shares, &raw, &arrangement) };
         // Between two decisions within rounding a sliver may close upon itself: no wider than that.
-        if edge.signed_area().abs() > edge.length() * tolerances.depth {
+        if edge.signed_area().abs() > edge.length() * SLIVER * tolerances.coincidence {
             region.loops.push(edge);
         }
     }
@@ -180,7 +186,7 @@ fn strands(
     let mut open: Vec<Open> = Vec::new();
     for (i, piece) in (0u32..).zip(&raw.pieces) {
         open.clear();
-        open_parts(&piece.segment, family, clearance, COVER_MARGIN * tolerances.depth, &mut open);
+        open_parts(&piece.segment, family, clearance, COVER_MARGIN * tolerances.coincidence, &mut open);
         for o in &open {
             let whole = o.from <= 0.0 && o.to >= 1.0;
             let segment = if whole { piece.segment } else { piece.segment.part(o.from, o.to) };
@@ -289,7 +295,7 @@ fn drop_twins(choices: &mut [Choice], piece_of: &impl Fn(&Fragment) -> Segment, 
             }
             let s = piece_of(&c.fragment);
             let middle = s.point_at(0.5);
-            if first.iter().any(|k| k.distance(middle) <= tolerances.depth) {
+            if first.iter().any(|k| k.distance(middle) <= 8.0 * tolerances.coincidence) {
                 twins.push(i);
             } else {
                 first.push(s);

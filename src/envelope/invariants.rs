@@ -116,11 +116,11 @@ impl SweptRegion {
         }
         // A little outside: less than half of what the piece is long, for beyond it others may come.
         // Another disc may touch the edge in one point, so two places of three decide; and it may leave
-        // a gap narrower than the step, so only a depth of nearly the whole step counts.
+        // a gap narrower than the step, so only a depth of the whole step counts.
         let step = (4.0 * self.bound).min(0.25 * s.length());
         let covered = LOOKED_AT.iter().filter(|&&t| {
             let out: Vec2 = -s.left_normal_at(t);
-            clearance.at(s.point_at(t) + out * step).is_some_and(|c| c.clearance <= -0.9 * step)
+            clearance.at(s.point_at(t) + out * step).is_some_and(|c| c.clearance + step <= self.bound / 32.0)
         });
         if step > 2.0 * self.bound && covered.count() > 1 {
             return Err(Broken::CoveredOutside { at: s.point_at(0.5) });

@@ -78,6 +78,10 @@ impl<T: Copy, const N: usize> Few<T, N> {
 }
 
 /// How two segments meet.
+#[allow(
+    clippy::large_enum_variant,
+    reason = "it lives on the stack for one pair; a box would allocate for each"
+)]
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub enum Crossing {
     /// Nowhere.

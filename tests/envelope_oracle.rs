@@ -1,6 +1,6 @@
 //! The oracle: a point is swept exactly when its clearance is at most zero.
 
-#![allow(clippy::unwrap_used, reason = "a test may stop at the first surprise")]
+#![allow(clippy::unwrap_used, clippy::panic, reason = "a test may stop at the first surprise")]
 
 mod oracle;
 

@@ -207,7 +207,7 @@ fn the_drawing_is_laid_where_the_program_cuts() {
     ] {
         let laid = lay(more);
         assert_eq!(laid.status, 0, "{more:?} {}{}", laid.out, laid.err);
-        assert!(laid.out.contains("shifted by X1"), "{}", laid.out);
+        assert!(laid.out.contains("placed ") && laid.out.contains("X1"), "{}", laid.out);
     }
 }
 

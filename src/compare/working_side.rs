@@ -173,7 +173,7 @@ mod tests {
 
     #[test]
     fn a_move_that_only_clips_a_corner_between_its_ends_is_seen_on_both_sides() {
-        let across = chain(&[(-10.0, 8.0), (8.0, -10.0)]);
+        let across = chain(&[(-8.0, 10.0), (10.0, -8.0)]);
         let WorkingSide::Both { second, .. } = side(vec![ring(0.0, 0.0, 50.0, 30.0)], &across) else {
             panic!("ends and middle lie outside, the clipped corner does not")
         };

@@ -18,18 +18,8 @@ pub const SCHEMA: &str = include_str!("job.schema.json");
 /// Keys of the document.
 pub const TOP: &[&str] = &["units", "part", "tolerance", "cutter", "program", "check", "output"];
 /// Keys of `[part]`.
-pub const PART: &[&str] = &[
-    "file",
-    "layer",
-    "keep",
-    "allowance",
-    "mirror",
-    "turn",
-    "shift",
-    "copies",
-    "join_gap",
-    "curve_error",
-];
+pub const PART: &[&str] =
+    &["file", "layer", "keep", "allowance", "mirror", "turn", "shift", "copies", "join_gap", "curve_error"];
 /// Keys of an entry of `part.copies`.
 pub const COPY: &[&str] = &["shift", "turn"];
 /// Keys of `[tolerance]`.
@@ -175,5 +165,8 @@ fn read_cutters(top: &Table) -> Option<Cutters> {
 
 /// The names that a value of `T` may have.
 pub fn names<T: ValueEnum>() -> Vec<String> {
-    T::value_variants().iter().filter_map(|v| v.to_possible_value().map(|p| p.get_name().to_owned())).collect()
+    T::value_variants()
+        .iter()
+        .filter_map(|v| v.to_possible_value().map(|p| p.get_name().to_owned()))
+        .collect()
 }

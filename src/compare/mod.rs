@@ -5,9 +5,11 @@
 
 mod deviation;
 mod regions;
+mod side;
 
 pub use deviation::{DeviationSummary, deviation_summary};
 pub use regions::Regions;
+pub use side::{WorkingSide, working_side};
 
 use crate::geometry::{Path, Point};
 

@@ -5,11 +5,11 @@
 
 mod deviation;
 mod regions;
-mod side;
+mod working_side;
 
 pub use deviation::{DeviationSummary, deviation_summary};
 pub use regions::Regions;
-pub use side::{WorkingSide, working_side};
+pub use working_side::{WorkingSide, working_side};
 
 use crate::geometry::{Path, Point};
 

@@ -39,7 +39,7 @@ pub fn check(check: &Check) -> Result<Report, Refusal> {
     warnings.extend(too_wide(&part, &view.cutting, &check.part.file, program.unit));
     let (limits, more) = limits(check.limits, program.unit, &check.program.file);
     warnings.extend(more);
-    let swept = judge::sweep(&view.cutting)?;
+    let swept = judge::sweep(&view.cutting, &program)?;
     let comparison = judge::compare(&part, &view, &swept, &limits)?;
     let judgement = judge::judge(&comparison, &program, &limits);
     let inputs = inputs(check, &part, &program, &view, layers, placement);

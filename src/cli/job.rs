@@ -170,3 +170,128 @@ pub fn names<T: ValueEnum>() -> Vec<String> {
         .filter_map(|v| v.to_possible_value().map(|p| p.get_name().to_owned()))
         .collect()
 }
+
+#[cfg(test)]
+mod tests {
+    use super::super::args::{KeepName, UnitName};
+    use super::*;
+
+    const WHOLE: &str = r#"
+units = "mm"
+
+[part]
+file = "follower.dxf"
+layer = "FINISHED"
+keep = "inside"
+allowance = 0.0
+shift = [0.0, 0.0]
+turn = 0
+copies = [{ shift = [50.0, 0.0], turn = 90.0 }]
+
+[tolerance]
+gouge = 0.02
+excess = 0.05
+cusp = 0.01
+
+[cutter.1]
+diameter = 10.0
+corner_radius = 0.0
+
+[program]
+file = "follower.nc"
+
+[check]
+top = 0.0
+clear = "area"
+only_visited = true
+
+[output]
+json = "out/report.json"
+"#;
+
+    fn problems(text: &str) -> Vec<Problem> {
+        read(text.as_bytes(), "job.toml", Path::new("jobs")).unwrap_err()
+    }
+
+    #[test]
+    fn a_whole_job_is_read_with_its_paths_beside_it() {
+        let job = read(WHOLE.as_bytes(), "job.toml", Path::new("jobs")).unwrap();
+        assert_eq!(job.units, Some(UnitName::Mm));
+        assert_eq!(job.keep, Some(KeepName::Inside));
+        assert_eq!(job.layers, Some(vec!["FINISHED".to_owned()]));
+        let part = job.part.unwrap();
+        assert_eq!((part.name.as_str(), part.path), ("follower.dxf", Path::new("jobs").join("follower.dxf")));
+        assert_eq!((job.gouge, job.excess, job.cusp), (Some(0.02), Some(0.05), Some(0.01)));
+        assert_eq!(job.cutters, Some(Cutters::Table([(1, 10.0)].into())));
+        assert_eq!(job.copies, Some(vec![Lay { turn: 90.0, shift: [50.0, 0.0] }]));
+        assert_eq!(job.only_visited, Some(true));
+    }
+
+    #[test]
+    fn an_unknown_key_is_placed_and_the_nearest_known_one_named() {
+        let all = problems("units = \"mm\"\n[part]\n  layr = \"A\"\n");
+        assert_eq!(all.len(), 1);
+        assert_eq!((all[0].place.line, all[0].place.column, all[0].place.length), (Some(3), Some(3), 4));
+        assert_eq!(all[0].found, "unknown key `layr` in [part]");
+        assert_eq!(all[0].help, "write layer, or take the line out");
+        assert!(problems("[colour]\n")[0].help.contains("use one of: units, part"));
+    }
+
+    #[test]
+    fn every_mistake_is_named_at_once_with_its_line() {
+        let text = "units = \"cm\"\n[part]\nfile = 3\nshift = [1.0]\nturn = \"90\"\nallowance = -1\nkeep = \"insid\"\n\
+                    [cutter.T1]\ndiameter = 10\n[cutter.2]\n[cutter.3]\ndiameter = nan\ncorner_radius = 1\n\
+                    [check]\nonly_visited = 1\n[program]\nfile = \"\"\n[tolerance]\ncusp = inf\n";
+        let lines: Vec<usize> = problems(text).iter().filter_map(|p| p.place.line).collect();
+        assert_eq!(lines, [1, 3, 4, 5, 6, 7, 8, 10, 12, 13, 15, 17, 19]);
+        assert!(problems(text).iter().all(|p| !p.help.is_empty()));
+        let keep = problems(text).into_iter().find(|p| p.place.line == Some(7)).unwrap();
+        assert_eq!(keep.help, "write keep = \"inside\"");
+    }
+
+    #[test]
+    fn what_is_no_toml_is_placed_too() {
+        let all = problems("[part]\nfile = follower.dxf\n");
+        assert_eq!(all[0].place.line, Some(2));
+        assert!(read(&[0xff, 0xfe, 0], "job.toml", Path::new("")).is_err());
+        assert!(read(b"", "job.toml", Path::new("")).is_ok());
+    }
+
+    #[test]
+    fn any_cut_or_changed_job_is_read_or_refused_without_panic() {
+        let mut rng = fastrand::Rng::with_seed(11);
+        for _ in 0..5000 {
+            let mut bytes = WHOLE.as_bytes().to_vec();
+            for _ in 0..rng.usize(1..6) {
+                let at = rng.usize(..bytes.len());
+                bytes[at] = rng.u8(..);
+            }
+            bytes.truncate(rng.usize(..bytes.len()));
+            if let Err(all) = read(&bytes, "job.toml", Path::new("")) {
+                assert!(!all.is_empty() && all.iter().all(|p| !p.help.is_empty()));
+            }
+        }
+    }
+
+    #[test]
+    fn the_schema_knows_the_same_keys_and_accepts_the_same_job() {
+        let schema: serde_json::Value = serde_json::from_str(SCHEMA).unwrap();
+        let keys = |pointer: &str| {
+            let object = schema.pointer(pointer).unwrap().as_object().unwrap();
+            object.keys().cloned().collect::<std::collections::BTreeSet<_>>()
+        };
+        let known = |k: &[&str]| k.iter().map(|s| (*s).to_owned()).collect();
+        assert_eq!(keys("/properties"), known(TOP));
+        assert_eq!(keys("/properties/part/properties"), known(PART));
+        assert_eq!(keys("/properties/part/properties/copies/items/properties"), known(COPY));
+        assert_eq!(keys("/properties/tolerance/properties"), known(TOLERANCE));
+        assert_eq!(keys("/properties/cutter/additionalProperties/properties"), known(CUTTER));
+        assert_eq!(keys("/properties/program/properties"), known(PROGRAM));
+        assert_eq!(keys("/properties/check/properties"), known(CHECK));
+        assert_eq!(keys("/properties/output/properties"), known(OUTPUT));
+        let job: serde_json::Value = toml::from_str(WHOLE).unwrap();
+        assert!(jsonschema::is_valid(&schema, &job));
+        let wrong: serde_json::Value = toml::from_str("[part]\nlayr = \"A\"").unwrap();
+        assert!(!jsonschema::is_valid(&schema, &wrong));
+    }
+}

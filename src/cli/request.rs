@@ -253,3 +253,86 @@ impl Cutters {
         diameter.and_then(|d| Cutter::flat(d).ok())
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use std::path::Path;
+
+    use super::super::draft::command_line;
+    use super::*;
+
+    fn named(name: &str) -> Option<Named> {
+        Some(Named::within(Path::new(""), Path::new(name)))
+    }
+
+    fn whole() -> Draft {
+        Draft {
+            part: named("a.dxf"),
+            program: named("a.nc"),
+            cutters: Some(Cutters::Every(10.0)),
+            ..Draft::default()
+        }
+    }
+
+    fn refused(draft: Draft) -> Vec<String> {
+        let problems = check(draft, String::new(), &command_line()).unwrap_err();
+        assert!(problems.iter().all(|p| !p.help.is_empty()));
+        problems.into_iter().map(|p| p.found).collect()
+    }
+
+    #[test]
+    fn what_is_missing_is_all_named_at_once() {
+        assert_eq!(
+            refused(Draft::default()),
+            ["the program is missing", "the cutter's diameter is missing", "the drawing is missing"]
+        );
+    }
+
+    #[test]
+    fn a_diameter_that_is_no_positive_length_is_refused() {
+        for diameter in [0.0, -5.0, f64::NAN, f64::INFINITY] {
+            let cutters = Some(Cutters::Every(diameter));
+            assert_eq!(refused(Draft { cutters, ..whole() }), [format!("the diameter is {diameter}")]);
+        }
+        let cutters = Some(Cutters::Table([(1, 10.0), (2, -1.0)].into()));
+        assert_eq!(refused(Draft { cutters, ..whole() }), ["the diameter is -1"]);
+    }
+
+    #[test]
+    fn tolerances_below_zero_and_a_level_above_the_top_are_refused() {
+        assert_eq!(refused(Draft { gouge: Some(-0.01), ..whole() }), ["the gouge tolerance is -0.01"]);
+        assert_eq!(
+            refused(Draft { level: Some(5.0), ..whole() }),
+            ["the level 5 lies above the part's top 0"]
+        );
+    }
+
+    #[test]
+    fn outputs_must_not_meet_each_other_nor_an_input() {
+        assert_eq!(refused(Draft { json: named("x"), svg: named("x"), ..whole() }), ["two outputs go to x"]);
+        assert_eq!(
+            refused(Draft { json: named("-"), svg: named("-"), ..whole() }),
+            ["two outputs go to standard output"]
+        );
+        assert_eq!(
+            refused(Draft { svg: named("a.nc"), ..whole() }),
+            ["the output a.nc is an input of the check"]
+        );
+    }
+
+    #[test]
+    fn the_command_line_goes_before_the_job_file() {
+        let said = Draft { cutters: Some(Cutters::Every(9.98)), ..Draft::default() };
+        let request = check(said.or(whole()), String::new(), &command_line()).unwrap();
+        assert_eq!(request.program.cutters.of(7).map(|c| c.diameter()), Some(9.98));
+    }
+
+    #[test]
+    fn where_the_program_names_no_tool_the_only_cutter_is_meant() {
+        let one = Cutters::Table([(3, 8.0)].into());
+        assert_eq!(one.of(0).map(|c| c.diameter()), Some(8.0));
+        assert!(one.of(1).is_none());
+        let two = Cutters::Table([(3, 8.0), (4, 6.0)].into());
+        assert!(two.of(0).is_none());
+    }
+}

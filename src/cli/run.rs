@@ -13,6 +13,7 @@ use super::request::{self, Check, Outputs};
 use super::{files, job, judge};
 use crate::findings::{Report, Verdict};
 use crate::input::{Place, Problem, Refusal};
+use crate::report::{self, SweptEdge};
 
 /// Does what the command line says.
 pub fn run(cli: &Cli) -> Exit {
@@ -22,9 +23,9 @@ pub fn run(cli: &Cli) -> Exit {
         Command::Inspect(args) => inspect::run(args),
         Command::Schema { which } => {
             let text = match which {
-                SchemaName::Report => judge::report_schema(),
+                SchemaName::Report => report::report_schema(),
                 SchemaName::Job => job::SCHEMA,
-                SchemaName::Envelope => judge::envelope_schema(),
+                SchemaName::Envelope => report::envelope_schema(),
             };
             let written = output::to_standard_output(text.as_bytes());
             settle(written.map(|()| Exit::Pass))
@@ -130,7 +131,8 @@ fn run_envelope(args: &EnvelopeArgs) -> Result<(), Refusal> {
     let reading = check::read_program(&request, None)?;
     let program = reading.value;
     let family = check::view(&program, &request)?.cutting;
-    let swept = judge::sweep(&family)?;
+    let swept = judge::sweep(&family, &program)?;
+    let edge = SweptEdge { region: &swept, family: &family, program: &program };
     let mut files = Vec::new();
     let mut add = |to: &Option<Named>, bytes: &dyn Fn() -> Result<Vec<u8>, Refusal>| {
         if let Some(to) = to {
@@ -138,8 +140,8 @@ fn run_envelope(args: &EnvelopeArgs) -> Result<(), Refusal> {
         }
         Ok::<(), Refusal>(())
     };
-    add(&asked.json, &|| judge::edge_json(&swept, &family, &program))?;
-    add(&asked.svg, &|| judge::edge_svg(&swept, &family, &program))?;
+    add(&asked.json, &|| judge::edge_json(&edge))?;
+    add(&asked.svg, &|| judge::edge_svg(&edge))?;
     add(&asked.dxf, &|| judge::dxf(&swept, program.unit))?;
     add(&asked.csv, &|| Ok(judge::csv(&swept)))?;
     output::complain(&reading.problems);

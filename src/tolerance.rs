@@ -47,6 +47,6 @@ impl Tolerances {
     #[must_use]
     pub fn for_extent(extent: f64) -> Self {
         let coincidence = (extent.abs() * 4e-13).max(1e-12);
-        Self { coincidence, depth: 8.0 * coincidence, figure: (16.0 * coincidence).max(1e-9) }
+        Self { coincidence, depth: 0.5 * coincidence, figure: (16.0 * coincidence).max(1e-9) }
     }
 }

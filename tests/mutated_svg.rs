@@ -3,7 +3,7 @@
 
 use sweptedge::input::Severity;
 use sweptedge::input::drawing::DrawingOptions;
-use sweptedge::input::drawing::svg::read_svg;
+use sweptedge::input::drawing::svg::{read_subpaths, read_svg};
 
 const DRAWINGS: [&str; 6] = [
     "<svg xmlns='http://www.w3.org/2000/svg' width='20mm' height='10mm' viewBox='0 0 20 10'><g id='a' \
@@ -13,7 +13,7 @@ const DRAWINGS: [&str; 6] = [
     "<!DOCTYPE svg [<!ENTITY n 'M0 0C1 2 3 4 5 6'>]><svg viewBox='0 0 9 9'><path d='&n;Q7 8 9 9H3V2Z'/></svg>",
     "<svg><style>g{display:none}</style><switch><g style='display:inline'><line x1='1' x2='2'/></g></switch>\
      <svg x='1' width='5' height='5' viewBox='0 0 1 1' preserveAspectRatio='xMaxYMin slice'><circle r='1'/></svg></svg>",
-    "<svg height='3cm' viewBox='-1 -1 5 5'><text>\u{e4}\u{20ac}</text><path d='M0,0A1e2 5 30 1 0 3 4zL1 1'/><use/></svg>",
+    "<svg height='3cm' viewBox='-1 -1 5 5'><text>\u{e4}\u{20ac}</text><path d='M0,0A1e2 5 30 1 0 3 4zL1 1' id='p'/><use href='#p' x='4'/></svg>",
 ];
 
 const SNIPPETS: [&str; 28] = [
@@ -87,7 +87,7 @@ fn mutated(rng: &mut fastrand::Rng, drawing: &str) -> Vec<u8> {
 #[test]
 fn drawings_before_mutation_are_all_read() {
     for drawing in DRAWINGS {
-        let read = read_svg(drawing.as_bytes(), "whole.svg", &DrawingOptions::default());
+        let read = read_subpaths(drawing.as_bytes(), "whole.svg", &DrawingOptions::default());
         assert!(read.is_ok(), "{drawing}: {read:?}");
     }
 }
@@ -100,9 +100,12 @@ fn hundred_thousand_mutated_drawings_never_panic() {
     for _ in 0..100_000 {
         let drawing = DRAWINGS[rng.usize(0..DRAWINGS.len())];
         let bytes = mutated(&mut rng, drawing);
-        match read_svg(&bytes, "mutated.svg", &options) {
+        match read_subpaths(&bytes, "mutated.svg", &options) {
             Ok(reading) => {
                 taken += 1;
+                if let Err(problems) = read_svg(&bytes, "mutated.svg", &options) {
+                    assert!(problems.iter().any(|p| p.severity == Severity::Error));
+                }
                 let contour = &reading.value.contour;
                 assert_eq!(contour.paths().len(), reading.value.origins.len());
                 let b = contour.bounds();

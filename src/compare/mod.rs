@@ -4,6 +4,9 @@
 //! differ by slivers of rounding, and a distance does not see them.
 
 mod along;
+mod area;
+mod ceiling;
+mod cell;
 mod deviation;
 mod excess;
 mod folds;
@@ -26,6 +29,7 @@ use crate::tolerance::Tolerances;
 use crate::view::DiscFamily;
 
 use along::Tracer;
+use area::Floor;
 use excess::Judge;
 use gouge::Follower;
 use passes::Passes;
@@ -244,8 +248,62 @@ pub fn compare(part: &Part, cutting: &DiscFamily, rapids: &DiscFamily, request: 
     let mut scanner =
         Scanner { walls: &walls, moves: &moves, passes: &passes, tracer, limits: judge.clearances() };
     excess::contour_not_reached(&part.contour, &mut scanner, &judge, &mut out);
+    if request.clear == Clear::Area {
+        area_not_reached(part, (&walls, &moves), request, bound, &mut out);
+    }
     out.excesses.sort_by(|a, b| b.height.size.total_cmp(&a.height.size));
     out
+}
+
+/// Uncut spots of the openings. A spot that holds the greatest excess of a stretch of contour, and is
+/// no higher, is that excess and is not entered again.
+fn area_not_reached(
+    part: &Part,
+    (walls, moves): (&Walls, &Targets),
+    request: &Request,
+    bound: f64,
+    out: &mut Comparison,
+) {
+    let Some(floor) = Floor::new(part, (walls, moves), &out.never_visited, &request.tolerances) else {
+        return;
+    };
+    let limit = request.excess - bound;
+    let (spots, boxes) = floor.spots(limit);
+    let known: Vec<(Point, Figure, bool)> =
+        out.excesses.iter().map(|e| (e.at, e.height, e.crest.is_some())).collect();
+    let mut worst = out.worst_excess.unwrap_or(Figure { size: 0.0, bound });
+    for (position, spot) in spots.iter().enumerate() {
+        let height = Figure { size: spot.size.max(0.0), bound: bound + spot.gap };
+        let own =
+            |at: Point| boxes.iter().any(|(b, p)| *p == position && b.inflate(bound, bound).contains(at));
+        let same = known.iter().find(|(at, h, _)| h.size + h.bound >= spot.size && own(*at));
+        if height.size > worst.size && same.is_none_or(|k| !k.2) {
+            worst = height;
+        }
+        if same.is_none() {
+            out.excesses.push(Excess {
+                height,
+                at: spot.at,
+                stretch: None,
+                nearest_move: spot.nearest,
+                crest: None,
+                whole_path: false,
+                region: None,
+            });
+        }
+    }
+    if spots.is_empty() {
+        // Nothing is over the limit: a hundredth of it is sharp enough to say how much is left.
+        let within = (0.01 * request.excess).max(request.tolerances.figure);
+        match floor.greatest(worst.size, within) {
+            Some(spot) if spot.size > worst.size => {
+                worst = Figure { size: spot.size, bound: bound + spot.gap };
+            }
+            Some(spot) => worst.bound += (spot.size + spot.gap - worst.size).max(0.0),
+            None => {}
+        }
+    }
+    out.worst_excess = Some(worst);
 }
 
 /// Gouges and rapids.

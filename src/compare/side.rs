@@ -70,6 +70,21 @@ impl Walls {
         self.along[k]
     }
 
+    /// The segment before `k` on its path.
+    pub(super) fn before(&self, k: usize) -> Option<usize> {
+        self.neighbours[k].0.map(|n| n as usize)
+    }
+
+    /// The segment after `k` on its path.
+    pub(super) fn after(&self, k: usize) -> Option<usize> {
+        self.neighbours[k].1.map(|n| n as usize)
+    }
+
+    /// Turn at the joint after segment `k`, see [`Self::turn_at`].
+    pub(super) fn turn_after(&self, k: usize) -> f64 {
+        self.turn_at(k, Feature::End)
+    }
+
     fn segment(&self, k: usize) -> &Segment {
         self.targets.segment(k)
     }

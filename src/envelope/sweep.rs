@@ -32,9 +32,15 @@ impl std::fmt::Display for SweepError {
 
 impl std::error::Error for SweepError {}
 
-/// A covered stretch is removed early only when it lies this many times deeper than the depth at which
-/// fragments are decided: the early way and the careful way then never disagree.
-const COVER_MARGIN: f64 = 16.0;
+/// A covered stretch is removed early only when it lies deeper than this many coincidence lengths: the
+/// early way and the careful way then never disagree.
+const COVER_MARGIN: f64 = 128.0;
+
+/// Loops no wider than this many coincidence lengths are slivers between two decisions within rounding.
+const SLIVER: f64 = 8.0;
+
+/// Decisions worth no more than this many coincidence lengths in sum may be changed to close a loop.
+const CHANGEABLE: f64 = 512.0;
 
 /// The region which the discs of `family` cover, its edge as exact lines and arcs.
 ///
@@ -50,9 +56,20 @@ pub fn sweep(family: &DiscFamily) -> Result<SweptRegion, SweepError> {
     let far = bounds.x0.abs().max(bounds.x1.abs()).max(bounds.y0.abs()).max(bounds.y1.abs());
     let extent = 0.5 * bounds.width().max(bounds.height());
     // Far from the origin the coordinates themselves were rounded before they came here.
-    let tolerances = Tolerances::for_extent(extent.max(far * ROUNDING_SHARE));
-    let (local, sources, residual) = seat(family, shift, tolerances.coincidence);
-    let mut region = sweep_local(&local, &tolerances).map_err(|e| SweepError { at: e.at - shift })?;
+    let mut extent = extent.max(far * ROUNDING_SHARE);
+    let (local, sources, residual) = seat(family, shift, Tolerances::for_extent(extent).coincidence);
+    let mut tries = 0;
+    let (mut region, tolerances) = loop {
+        let tolerances = Tolerances::for_extent(extent);
+        match sweep_local(&local, &tolerances) {
+            Ok(region) => break (region, tolerances),
+            Err(e) if tries == COARSER_TRIES => return Err(SweepError { at: e.at - shift }),
+            Err(_) => {
+                tries += 1;
+                extent *= COARSER;
+            }
+        }
+    };
     for piece in region.loops.iter_mut().flat_map(|l| &mut l.pieces) {
         piece.segment = shifted(&piece.segment, -shift);
         piece.source = sources.get(piece.source).map_or(0, |&s| s as usize);
@@ -60,6 +77,13 @@ pub fn sweep(family: &DiscFamily) -> Result<SweptRegion, SweepError> {
     region.bound = 8.0 * tolerances.coincidence + 4.0 * f64::EPSILON * far + 2.0 * residual;
     Ok(region)
 }
+
+/// Moves that miss one another by about the coincidence length can leave the edge ambiguous. Then a
+/// coarser length settles which of them are one; the region's bound says what that cost.
+const COARSER: f64 = 16.0;
+
+/// How often it may be made coarser: the coincidence length stays below 2e-8 of the extent.
+const COARSER_TRIES: u32 = 4;
 
 /// Coordinates of size `far` are rounded by `far` times 1.1e-16; [`Tolerances::for_extent`] allows 4e-13
 /// of the extent. This share of `far` as extent allows eighteen roundings.
@@ -135,14 +159,14 @@ fn sweep_local(family: &DiscFamily, tolerances: &Tolerances) -> Result<SweptRegi
         .map(|f| decide(f, &strands, &shares, &raw, &clearance, tolerances))
         .collect();
     drop_twins(&mut choices, &piece_of, tolerances);
-    balance(&mut choices, &arrangement.places, 64.0 * tolerances.depth)
+    balance(&mut choices, &arrangement.places, CHANGEABLE * tolerances.coincidence)
         .map_err(|e| SweepError { at: e.at })?;
     let rings = loops(&choices, piece_of);
     let mut region = SweptRegion::default();
     for ring in rings {
         let edge = EdgeLoop { pieces: pieces(&ring, &choices, &strands, &shares, &raw, &arrangement) };
         // Between two decisions within rounding a sliver may close upon itself: no wider than that.
-        if edge.signed_area().abs() > edge.length() * tolerances.depth {
+        if edge.signed_area().abs() > edge.length() * SLIVER * tolerances.coincidence {
             region.loops.push(edge);
         }
     }
@@ -162,7 +186,7 @@ fn strands(
     let mut open: Vec<Open> = Vec::new();
     for (i, piece) in (0u32..).zip(&raw.pieces) {
         open.clear();
-        open_parts(&piece.segment, family, clearance, COVER_MARGIN * tolerances.depth, &mut open);
+        open_parts(&piece.segment, family, clearance, COVER_MARGIN * tolerances.coincidence, &mut open);
         for o in &open {
             let whole = o.from <= 0.0 && o.to >= 1.0;
             let segment = if whole { piece.segment } else { piece.segment.part(o.from, o.to) };
@@ -271,7 +295,7 @@ fn drop_twins(choices: &mut [Choice], piece_of: &impl Fn(&Fragment) -> Segment, 
             }
             let s = piece_of(&c.fragment);
             let middle = s.point_at(0.5);
-            if first.iter().any(|k| k.distance(middle) <= tolerances.depth) {
+            if first.iter().any(|k| k.distance(middle) <= 8.0 * tolerances.coincidence) {
                 twins.push(i);
             } else {
                 first.push(s);

@@ -85,7 +85,7 @@ pub enum Crossing {
     /// In single points, ordered along the first segment.
     Points(Few<Meeting, 8>),
     /// Along common stretches, ordered along the first segment. One of length zero is a touch.
-    Overlap(Few<Overlap, 4>),
+    Overlap(Few<Overlap, 8>),
 }
 
 /// How `a` and `b` meet; points nearer than `within` (a length) count as one.
@@ -95,11 +95,9 @@ pub enum Crossing {
 pub fn crossing(a: &Segment, b: &Segment, within: f64) -> Crossing {
     let mut found = Few::new();
     end_meetings(a, b, within, &mut found);
+    let mut stretches = Few::new();
     if found.len() >= 2 {
-        let stretches = overlaps(a, b, within, &mut found);
-        if !stretches.is_empty() {
-            return Crossing::Overlap(stretches);
-        }
+        overlaps(a, b, within, &mut found, &mut stretches);
     }
     match (a, b) {
         (Segment::Line(a), Segment::Line(b)) => line_line(a, b, &mut found),
@@ -107,7 +105,16 @@ pub fn crossing(a: &Segment, b: &Segment, within: f64) -> Crossing {
         (Segment::Arc(c), Segment::Line(l)) => line_arc(l, c, within, true, &mut found),
         (Segment::Arc(a), Segment::Arc(b)) => arc_arc(a, b, within, &mut found),
     }
-    if found.is_empty() { Crossing::None } else { Crossing::Points(found) }
+    if stretches.is_empty() {
+        return if found.is_empty() { Crossing::None } else { Crossing::Points(found) };
+    }
+    // Meetings that end no stretch are points: stretches of length zero.
+    for m in found.iter() {
+        if !stretches.iter().any(|s: Overlap| s.from == m || s.to == m) {
+            stretches.push(Overlap { from: m, to: m });
+        }
+    }
+    Crossing::Overlap(stretches)
 }
 
 /// Ends of one segment that lie on the other.
@@ -144,26 +151,20 @@ fn same_parameters(s: [f64; 2], t: [f64; 2], a: &Segment, b: &Segment, within: f
 
 /// Stretches between neighbouring end meetings on which the curves agree: the two differ most in the
 /// middle between two common points, so the middle decides.
-fn overlaps(a: &Segment, b: &Segment, within: f64, found: &mut Few<Meeting, 8>) -> Few<Overlap, 4> {
-    let mut sorted = *found;
-    sort_by_first(&mut sorted);
-    let mut stretches = Few::new();
-    for (from, to) in sorted.iter().zip(sorted.iter().skip(1)) {
+fn overlaps(
+    a: &Segment,
+    b: &Segment,
+    within: f64,
+    found: &mut Few<Meeting, 8>,
+    stretches: &mut Few<Overlap, 8>,
+) {
+    sort_by_first(found);
+    for (from, to) in found.iter().zip(found.iter().skip(1)) {
         let long = (to.t[0] - from.t[0]) * a.length() > 4.0 * within;
         if long && b.distance(a.point_at(0.5 * (from.t[0] + to.t[0]))) <= within {
             stretches.push(Overlap { from, to });
         }
     }
-    if !stretches.is_empty() {
-        // Meetings that end no stretch are touches: stretches of length zero.
-        for m in sorted.iter() {
-            if !stretches.iter().any(|s: Overlap| s.from == m || s.to == m) {
-                stretches.push(Overlap { from: m, to: m });
-            }
-        }
-    }
-    *found = sorted;
-    stretches
 }
 
 fn sort_by_first(found: &mut Few<Meeting, 8>) {

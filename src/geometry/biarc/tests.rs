@@ -95,7 +95,8 @@ fn degenerate_cubics_give_finite_connected_segments_within_the_bound() {
         CubicBez::new(p(0.0, 0.0), p(0.0, 0.0), p(0.0, 100.0), p(100.0, 100.0)),
         CubicBez::new(p(667.0, 534.0), p(667.0, 547.0), p(656.0, 557.0), p(643.0, 557.0)),
     ] {
-        check_cubic(&c, 1e-3);
+        let (real, bound, _) = check_cubic(&c, 1e-3);
+        assert!(bound <= 3.0 * real + 1e-12, "{bound} for {real}: {c:?}");
         check_cubic(&c, 1e-6);
         check_cubic(&CubicBez::new(c.p3, c.p2, c.p1, c.p0), 1e-3);
         check_cubic(&CubicBez::new(c.p0, c.p1, c.p2, c.p3), 5.0);
@@ -236,4 +237,14 @@ fn error_far_below_rounding_ends_with_an_honest_bound() {
     let a = cubic_to_arcs(&c, 1e-300).unwrap();
     assert!(a.bound > 1e-300 && a.bound < 1e-8, "{}", a.bound);
     assert!(a.segments.len() < 20_000, "{}", a.segments.len());
+}
+
+#[test]
+fn curve_far_from_the_origin_has_a_bound_that_covers_rounding() {
+    let far = Vec2::new(1e6, -1e6);
+    let mut rng = fastrand::Rng::with_seed(5);
+    for _ in 0..20 {
+        let mut p = || Point::new(rng.f64() * 50.0, rng.f64() * 50.0) + far;
+        check_cubic(&CubicBez::new(p(), p(), p(), p()), 1e-3);
+    }
 }

@@ -24,8 +24,11 @@ use roxmltree::{Document, ParsingOptions};
 
 use self::source::Source;
 use self::walk::Walk;
+use super::finish::{Strands, finish};
+use super::join::{Gaps, Strand};
 use super::{Drawing, DrawingOptions};
-use crate::input::{Problem, Reading, Refusal};
+use crate::input::{Place, Problem, Reading, Refusal};
+use crate::program::Unit;
 
 /// Most XML nodes of a drawing: some hundred megabytes of memory.
 const MOST_NODES: u32 = 2_000_000;
@@ -36,13 +39,43 @@ const MOST_ENTITY_TEXT: usize = 64_000_000;
 /// Reads an SVG drawing.
 ///
 /// Curves lie within `options.curve_error` (or the default, scaled to the unit) of the lines and arcs
-/// given; the contour's bound says how far at most. Subpaths that are not closed stay open chains.
-/// `options.layers` names groups by id or label, or elements by id; all of them must exist.
+/// given; the contour's bound says how far at most. `options.layers` names groups by id or label, or
+/// elements by id; all of them must exist. Subpaths whose ends meet are joined as in every drawing.
+///
+/// # Errors
+/// Those of [`read_subpaths`], and of joining: ends that almost meet or meet three at a time, paths that
+/// cross.
+pub fn read_svg(bytes: &[u8], file: &str, options: &DrawingOptions) -> Result<Reading<Drawing>, Refusal> {
+    let Reading { value: loose, problems } = read_subpaths(bytes, file, options)?;
+    let strand = |(path, origin): (&crate::geometry::Path, crate::part::Origin)| Strand {
+        segments: path.segments().to_vec(),
+        closed: path.is_closed(),
+        layer: origin.layer,
+        place: Place { file: file.to_owned(), line: origin.line, ..Place::default() },
+    };
+    let strands = Strands {
+        strands: loose.contour.paths().iter().zip(loose.origins).map(strand).collect(),
+        gaps: Gaps::new(options.join_gap, loose.unit.map_or(1.0, Unit::in_mm)),
+        bound: loose.contour.bound(),
+        unit: loose.unit,
+        layers: loose.layers,
+    };
+    finish(strands, file, problems)
+}
+
+/// The subpaths of an SVG drawing as they are drawn: closed ones as loops, open ones as chains, nothing
+/// joined and nothing checked against another.
+///
+/// Not suitable as a part: shapes may cross or lie on one another.
 ///
 /// # Errors
 /// Placed problems, at least one of them an error: text that is no well-formed SVG, values that are no
 /// finite numbers, a named layer that does not exist, a drawing without contour.
-pub fn read_svg(bytes: &[u8], file: &str, options: &DrawingOptions) -> Result<Reading<Drawing>, Refusal> {
+pub fn read_subpaths(
+    bytes: &[u8],
+    file: &str,
+    options: &DrawingOptions,
+) -> Result<Reading<Drawing>, Refusal> {
     let source = Source::new(bytes, file)?;
     let help = "mend the file, or save the drawing again from where it was made";
     if entity_text(source.text) > MOST_ENTITY_TEXT {

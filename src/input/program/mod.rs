@@ -161,6 +161,9 @@ impl Reader<'_> {
         let (unit, unit_stated) = self.control.unit();
         let options = self.control.options;
         let Interpreter { mut faults, moves, .. } = self.control;
+        if !moves.says_z {
+            faults.withdraw(Note::HeightAssumed);
+        }
         if faults.refused() {
             return Err(faults.into_refusal());
         }
@@ -182,9 +185,6 @@ impl Reader<'_> {
         }
         if left_out > 0 {
             of_file.push(heights_unknown(file, left_out));
-        }
-        if !program.says_z {
-            faults.withdraw(Note::HeightAssumed);
         }
         Ok(Reading { value: program, problems: faults.warnings(of_file) })
     }

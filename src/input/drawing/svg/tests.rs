@@ -186,8 +186,22 @@ fn closing_line_is_added_only_where_it_is_missing() {
     }
     let gap = on_page("<path d='M0 0 H10 V10 H0 V0.001 Z'/>");
     assert_eq!(paths(&gap)[0].segments().len(), 5);
-    let open = on_page("<path d='M0 0 H10 V10 H0 V0.001'/>");
+    let open = on_page("<path d='M0 0 H10 V10 H0 V2'/>");
     assert!(!paths(&open)[0].is_closed());
+}
+
+#[test]
+fn loose_lines_and_arcs_are_joined_into_a_loop() {
+    let text = format!(
+        "{OPEN}<line x1='0' y1='0' x2='10' y2='0'/><polyline points='0 10 0 0'/><path d='M0 10H10'/>\
+         <path d='M10 0A5 5 0 0 1 10.001 10'/></svg>"
+    );
+    let r = read_with(&text, &DrawingOptions::default()).unwrap();
+    assert_eq!(paths(&r).len(), 1);
+    assert!(paths(&r)[0].is_closed());
+    assert!(r.value.contour.bound() >= 5e-4, "the closed gap is in the bound");
+    let loose = read_subpaths(text.as_bytes(), "part.svg", &DrawingOptions::default()).unwrap();
+    assert_eq!(loose.value.contour.paths().len(), 4);
 }
 
 #[test]
@@ -209,7 +223,7 @@ fn pieces_without_length_are_dropped() {
 
 #[test]
 fn polygon_is_closed_and_polyline_is_open() {
-    let r = on_page("<polygon points='0,0 10,0 10,10'/><polyline points='0 0,10-5.5.5 3'/>");
+    let r = on_page("<polygon points='0,0 10,0 10,10'/><polyline points='20 30,30-5.5.5 30'/>");
     assert!(paths(&r)[0].is_closed() && !paths(&r)[1].is_closed());
     assert_eq!(paths(&r)[1].segments().len(), 2);
     assert!(refused(&format!("{OPEN}<polygon points='0 0 10 0 10'/></svg>")).found.contains("5 numbers"));
@@ -250,13 +264,13 @@ fn layers_are_groups_by_label_or_id_and_elements_by_id() {
 #[test]
 fn what_is_left_out_is_said_with_its_place() {
     let r = on_page(
-        "<circle r='1'/>\n<text>A</text><text>B</text>\n <image/><use/>\
+        "<circle r='1'/>\n<text>A</text><text>B</text>\n <image/>\
          <defs><path d='M0 0L1 1'/></defs><g style='display:none'><rect width='1' height='1'/></g>\
          <blob/><title>x</title><style>g{transform:none}</style>",
     );
     assert_eq!(paths(&r).len(), 1);
     let found: Vec<&str> = r.problems.iter().map(|p| p.found.as_str()).collect();
-    assert_eq!(found.len(), 7, "{found:#?}");
+    assert_eq!(found.len(), 6, "{found:#?}");
     assert!(found[0].contains("2 times <text>"), "{found:?}");
     assert_eq!((r.problems[0].place.line, r.problems[0].place.column), (Some(2), Some(1)));
     assert!(r.problems.iter().all(|p| p.severity == Severity::Warning && !p.help.is_empty()));
@@ -335,4 +349,43 @@ fn many_errors_are_counted_not_listed() {
     let problems = read_with(&text, &DrawingOptions::default()).unwrap_err();
     assert!(problems.len() < 25, "{}", problems.len());
     assert!(problems.iter().any(|p| p.found.contains("480 more")), "{problems:?}");
+}
+
+#[test]
+fn copies_are_shown_where_they_are_put() {
+    let r = on_page(
+        "<defs><g id='pair'><circle id='c' r='1'/><circle cx='4' r='1'/></g></defs>\
+         <g id='nest'><use href='#pair' x='10' y='10' transform='translate(5 0)'/></g>\
+         <use xlink:href='#c' xmlns:xlink='http://www.w3.org/1999/xlink' y='30'/>",
+    );
+    let mut centers = Vec::new();
+    for (_, s) in r.value.contour.segments() {
+        let Segment::Arc(a) = s else { panic!("{s:?}") };
+        centers.push((a.center().x, a.center().y));
+    }
+    assert_eq!(centers, [(15.0, 40.0), (19.0, 40.0), (0.0, 20.0)]);
+    assert_eq!(r.value.layers.len(), 1);
+    assert_eq!((r.value.layers[0].name.as_str(), r.value.layers[0].entities), ("nest", 2));
+    let symbol = on_page(
+        "<symbol id='s' viewBox='0 0 2 2'><circle cx='1' cy='1' r='1'/></symbol>\
+         <use href='#s' x='10' y='10' width='20' height='20'/>",
+    );
+    let b = symbol.value.contour.bounds();
+    near(b.origin(), 10.0, 20.0);
+    near(Point::new(b.x1, b.y1), 30.0, 40.0);
+}
+
+#[test]
+fn copies_without_end_or_target_are_refused() {
+    assert!(refused("<svg><use href='#none'/></svg>").found.contains("not in the drawing"));
+    assert!(refused("<svg><use/></svg>").found.contains("not in the drawing"));
+    assert!(refused("<svg><g id='a'><use href='#a'/></g></svg>").found.contains("itself"));
+    assert!(refused("<svg><use id='b' href='#b'/></svg>").found.contains("itself"));
+    let mut text = "<svg><defs><circle id='l0' r='1'/>".to_owned();
+    for k in 1..20 {
+        let copies = format!("<use href='#l{}'/>", k - 1).repeat(10);
+        text.push_str(&format!("<g id='l{k}'>{copies}</g>"));
+    }
+    text.push_str("</defs><use href='#l19'/></svg>");
+    assert!(refused(&text).found.contains("more than"));
 }

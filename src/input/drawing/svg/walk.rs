@@ -17,6 +17,7 @@ use crate::part::Origin;
 use crate::program::Unit;
 use crate::tolerance::{CURVE_ERROR_MM, GREATEST_COORDINATE};
 
+mod copies;
 mod elements;
 mod style;
 
@@ -39,6 +40,8 @@ struct Context {
     /// Not under `display: none`.
     shown: bool,
     visible: bool,
+    /// Shown by a `use`: its ids are those of what it copies and open no layer.
+    copied: bool,
     depth: usize,
 }
 
@@ -66,6 +69,7 @@ pub(super) struct Walk<'a> {
     paths: Vec<Path>,
     origins: Vec<Origin>,
     bound: f64,
+    copies: copies::Copies,
 }
 
 impl<'a> Walk<'a> {
@@ -84,6 +88,7 @@ impl<'a> Walk<'a> {
             paths: Vec::new(),
             origins: Vec::new(),
             bound: 0.0,
+            copies: copies::Copies::default(),
         }
     }
 
@@ -109,6 +114,7 @@ impl<'a> Walk<'a> {
             taken: self.options.layers.is_empty(),
             shown: true,
             visible: true,
+            copied: false,
             depth: 0,
         };
         if let Ok((inner, _)) = self.enter(root, context) {
@@ -206,7 +212,7 @@ impl<'a> Walk<'a> {
             self.fault(self.source.element(node), found, "", help);
             return Err(Noted);
         }
-        let opened = if outer.depth == 0 { 0 } else { self.open_layers(node, &mut inner) };
+        let opened = if outer.depth == 0 || outer.copied { 0 } else { self.open_layers(node, &mut inner) };
         let read = self.styled(node, &mut inner).and_then(|()| self.moved(node, &mut inner));
         match read {
             Ok(()) => Ok((inner, opened)),

@@ -3,6 +3,7 @@
 mod arcs;
 mod language;
 mod refused;
+mod spellings;
 
 use super::*;
 use crate::program::{Motion, Move, MoveKind, Point3};

@@ -46,7 +46,7 @@ const SHAPES: [&str; 7] = ["path", "rect", "circle", "ellipse", "line", "polylin
 
 /// Along which side of the viewport a percentage counts.
 #[derive(Clone, Copy)]
-enum Side {
+pub(super) enum Side {
     Width,
     Height,
     /// The mean of both: root of half the sum of squares (SVG 1.1, 7.10).
@@ -67,12 +67,15 @@ impl Walk<'_> {
         if SILENT.contains(&name) {
             return;
         }
-        let holds = matches!(name, "g" | "a" | "svg" | "switch");
+        let holds = matches!(name, "g" | "a" | "svg" | "switch" | "use");
         let is_shape = SHAPES.contains(&name);
         if !holds && !is_shape {
             if outer.taken && outer.shown && outer.visible {
                 self.strange(node);
             }
+            return;
+        }
+        if outer.copied && !self.afford(node) {
             return;
         }
         let Ok((inner, opened)) = self.enter(node, outer) else {
@@ -83,16 +86,25 @@ impl Walk<'_> {
             if inner.taken && inner.shown && inner.visible {
                 self.shape(node, &inner);
             }
-        } else if name == "svg" {
-            if let Ok(inner) = self.nested(node, inner) {
-                self.children(node, inner);
-            }
-        } else if name == "switch" {
-            self.switch(node, inner);
         } else {
-            self.children(node, inner);
+            self.group(node, inner);
         }
         self.leave(opened);
+    }
+
+    /// An element that shows others.
+    fn group(&mut self, node: Node<'_, '_>, inner: Context) {
+        match node.tag_name().name() {
+            "svg" => {
+                if let Ok(inner) = self.nested(node, inner) {
+                    self.children(node, inner);
+                }
+            }
+            "switch" => self.switch(node, inner),
+            // A copy that fails has been noted.
+            "use" => self.copy(node, inner).unwrap_or(()),
+            _ => self.children(node, inner),
+        }
     }
 
     /// An element that may show something a contour could be meant by.
@@ -102,12 +114,10 @@ impl Walk<'_> {
                 self.skip(node, "is no contour", "turn the text into paths if it is to be cut")
             }
             "image" => self.skip(node, "is no contour", "trace the picture into paths if it is to be cut"),
-            "use" => self.skip(node, "(a copy of another element)", "turn the copy into a shape of its own"),
             "defs" | "symbol" | "clipPath" | "mask" => {
                 let shape = |n: Node<'_, '_>| SHAPES.contains(&n.tag_name().name());
                 if node.descendants().any(shape) {
-                    let help =
-                        "nothing is lost unless the drawing shows them by <use>: turn those into shapes";
+                    let help = "nothing is lost: templates are read where a <use> shows them";
                     self.skip(node, "with shapes that are only templates", help);
                 }
             }
@@ -229,7 +239,7 @@ impl Walk<'_> {
     }
 
     /// A length in user units; `None` where the attribute is missing or `auto`.
-    fn length(
+    pub(super) fn length(
         &mut self,
         node: Node<'_, '_>,
         name: &str,
@@ -331,20 +341,28 @@ impl Walk<'_> {
         let corner = (get("x", Side::Width)?.unwrap_or(0.0), get("y", Side::Height)?.unwrap_or(0.0));
         let width = get("width", Side::Width)?.or(outer.viewport.map(|v| v.x));
         let height = get("height", Side::Height)?.or(outer.viewport.map(|v| v.y));
-        let size = width.zip(height);
-        let mut inner =
-            Context { map: outer.map * Affine::translate(corner), viewport: size.map(Vec2::from), ..outer };
-        if let Some(view_box) = self.view_box(node)? {
-            let aspect = self.aspect(node)?;
-            let Some((width, height)) = size else {
-                let found = "an inner page with a viewBox but without a size";
-                let help = "give this <svg> a width and a height";
-                self.fault(self.source.element(node), found, "width and height", help);
-                return Err(Noted);
-            };
-            inner.map *= view_box_map(view_box, width, height, aspect);
-            inner.viewport = Some(view_box.size().to_vec2());
-        }
-        Ok(inner)
+        let moved = Context { map: outer.map * Affine::translate(corner), ..outer };
+        self.viewed(node, width.zip(height).map(Vec2::from), moved)
+    }
+
+    /// The contents of a viewport of this size, as its viewBox lays them.
+    pub(super) fn viewed(
+        &mut self,
+        node: Node<'_, '_>,
+        size: Option<Vec2>,
+        outer: Context,
+    ) -> Result<Context, Noted> {
+        let Some(view_box) = self.view_box(node)? else {
+            return Ok(Context { viewport: size, ..outer });
+        };
+        let aspect = self.aspect(node)?;
+        let Some(size) = size else {
+            let found = "an inner page with a viewBox but without a size";
+            let help = "give it a width and a height";
+            self.fault(self.source.element(node), found, "width and height", help);
+            return Err(Noted);
+        };
+        let map = outer.map * view_box_map(view_box, size.x, size.y, aspect);
+        Ok(Context { map, viewport: Some(view_box.size().to_vec2()), ..outer })
     }
 }

@@ -1,3 +1,7 @@
-//! The command line of `sweptedge`.
+//! The `sweptedge` program; everything it does is in [`sweptedge::cli`].
 
-fn main() {}
+use std::process::ExitCode;
+
+fn main() -> ExitCode {
+    sweptedge::cli::main()
+}

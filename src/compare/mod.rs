@@ -17,9 +17,11 @@ mod regions;
 mod scan;
 mod side;
 mod targets;
+mod working_side;
 
 pub use deviation::{DeviationSummary, deviation_summary};
 pub use regions::Regions;
+pub use working_side::{WorkingSide, working_side};
 
 use crate::geometry::{Path, Point, Segment};
 use crate::part::Part;

@@ -1,8 +1,8 @@
 //! The swept edge as a table: one vertex a line, a blank line between loops.
 //!
 //! Columns are x, y and bulge, the tangent of a quarter of the angle the edge turns through to the
-//! next vertex: 0 for a line, positive counter-clockwise (DXF reference, LWPOLYLINE). Each loop closes
-//! on its first vertex. Arcs stay arcs.
+//! next vertex: 0 for a line, positive counter-clockwise (DXF reference, LWPOLYLINE). Each loop repeats
+//! its first vertex at its end, as the reader of such tables wants a closed loop. Arcs stay arcs.
 
 use std::fmt::Write;
 
@@ -24,7 +24,9 @@ pub fn render(region: &SweptRegion) -> String {
         if at > 0 {
             out.push('\n');
         }
-        for v in vertices(edge) {
+        let vertices = vertices(edge);
+        let closing = vertices.first().map(|v| Vertex { at: v.at, bulge: 0.0 });
+        for v in vertices.into_iter().chain(closing) {
             // Writing to a string cannot fail.
             let _ = writeln!(out, "{},{},{}", v.at.x + 0.0, v.at.y + 0.0, v.bulge + 0.0);
         }

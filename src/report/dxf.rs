@@ -143,9 +143,12 @@ mod tests {
         for (code, owner) in body.iter().filter(|p| ["330", "340", "350"].contains(&p.0)) {
             assert!(*owner == "0" || unique.contains(owner), "{code} {owner}");
         }
-        let seed =
-            pairs.iter().position(|p| p.1 == "$HANDSEED").and_then(|at| pairs.get(at + 1)).expect("a seed");
+        let next = pairs
+            .iter()
+            .position(|p| p.1 == "$HANDSEED")
+            .and_then(|at| pairs.get(at + 1))
+            .expect("the next free handle");
         let number = |h: &str| usize::from_str_radix(h, 16).expect("a handle");
-        assert!(given.iter().all(|h| number(h) < number(seed.1)));
+        assert!(given.iter().all(|h| number(h) < number(next.1)));
     }
 }

@@ -2,7 +2,7 @@
 //!
 //! Each renderer takes the whole [`crate::findings::Report`] (or a [`SweptEdge`], for the `envelope`
 //! command) and gives text; only the command line writes it anywhere. Figures are shown by
-//! [`number`]'s rules everywhere but in JSON, which keeps every digit.
+//! the rules of `number` everywhere but in JSON, which keeps every digit.
 
 pub mod care;
 pub mod csv;

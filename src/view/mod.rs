@@ -2,7 +2,7 @@
 
 mod plan;
 
-pub use plan::{PlanView, plan};
+pub use plan::{PlanError, PlanView, plan};
 
 use crate::geometry::{Rect, Segment};
 use crate::program::MoveIndex;

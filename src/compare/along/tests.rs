@@ -2,8 +2,8 @@ use super::*;
 use crate::geometry::{Arc, Point, Segment, Vec2};
 
 /// Fixed start, so that a failing case stays the same.
-fn random(seed: u64) -> fastrand::Rng {
-    fastrand::Rng::with_seed(seed)
+fn random(start: u64) -> fastrand::Rng {
+    fastrand::Rng::with_seed(start)
 }
 
 fn segment(rng: &mut fastrand::Rng, lattice: bool) -> Segment {

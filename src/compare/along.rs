@@ -317,4 +317,4 @@ fn crossing(a: &Law, b: &Law, lo: f64, hi: f64) -> Option<f64> {
 }
 
 #[cfg(test)]
-mod tests;
+pub(super) mod tests;

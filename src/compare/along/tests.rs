@@ -6,7 +6,7 @@ fn random(start: u64) -> fastrand::Rng {
     fastrand::Rng::with_seed(start)
 }
 
-fn segment(rng: &mut fastrand::Rng, lattice: bool) -> Segment {
+pub(in crate::compare) fn segment(rng: &mut fastrand::Rng, lattice: bool) -> Segment {
     let mut number = |low: f64, high: f64| {
         let v = low + (high - low) * rng.f64();
         if lattice { v.round() } else { v }

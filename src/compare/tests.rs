@@ -30,7 +30,7 @@ pub(super) fn part(paths: Vec<Path>, keep: Keep) -> Part {
 
 pub(super) fn family(paths: &[Path], radius: f64) -> DiscFamily {
     let segments = paths.iter().flat_map(|p| p.segments().iter().copied());
-    let moves = (0u32..).zip(segments).map(|(i, segment)| DiscMove { segment, radius, source: MoveIndex(i) });
+    let moves = (0u32..).zip(segments).map(|(i, segment)| DiscMove::constant(segment, radius, MoveIndex(i)));
     DiscFamily { moves: moves.collect() }
 }
 
@@ -271,8 +271,7 @@ fn retraced_path_gives_the_figures_of_the_plain_one() {
     for m in &mut twice.moves {
         m.radius = 2.9;
     }
-    let back: Vec<DiscMove> =
-        twice.moves.iter().rev().map(|m| DiscMove { segment: m.segment.reversed(), ..*m }).collect();
+    let back: Vec<DiscMove> = twice.moves.iter().rev().map(|m| m.reversed()).collect();
     for _ in 0..12 {
         let again = twice.moves[..4].to_vec();
         twice.moves.extend(again);
@@ -310,7 +309,7 @@ fn passes_end_on_to_a_wall_leave_cusps_of_the_scallop_height() {
     let wall = part(vec![polyline(&[p(-100.0, 0.0), p(100.0, 0.0)], false)], Keep::Right);
     let step = 2.0;
     let plunges = (-50..=50).map(|i| Segment::line(p(f64::from(i) * step, 3.0), p(f64::from(i) * step, 3.0)));
-    let moves = plunges.map(|segment| DiscMove { segment, radius: 3.0, source: MoveIndex(0) });
+    let moves = plunges.map(|segment| DiscMove::constant(segment, 3.0, MoveIndex(0)));
     let found = judged(&wall, &DiscFamily { moves: moves.collect() }, 0.05);
     let height = 3.0_f64.hypot(1.0) - 3.0;
     assert!(close(found.worst_cusp.unwrap().size, height));
@@ -376,7 +375,7 @@ fn random_cuts(rng: &mut fastrand::Rng, radius: f64) -> DiscFamily {
             at = to;
         }
     }
-    let moves = (0u32..).zip(segments).map(|(i, segment)| DiscMove { segment, radius, source: MoveIndex(i) });
+    let moves = (0u32..).zip(segments).map(|(i, segment)| DiscMove::constant(segment, radius, MoveIndex(i)));
     DiscFamily { moves: moves.collect() }
 }
 
@@ -477,6 +476,7 @@ fn figures_are_the_same_for_moved_mirrored_and_reversed_inputs() {
             let moves = cuts.moves.iter().rev().map(|m| DiscMove {
                 segment: m.segment.mapped(*map).unwrap().reversed(),
                 radius: m.radius * scale,
+                end_radius: m.end_radius * scale,
                 ..*m
             });
             let extent = if number == 0 { 1e6 } else { 100.0 };

@@ -142,9 +142,7 @@ mod tests {
 
     fn family(path: &Path) -> DiscFamily {
         let moves = path.segments().iter();
-        DiscFamily {
-            moves: moves.map(|&segment| DiscMove { segment, radius: 5.0, source: MoveIndex(0) }).collect(),
-        }
+        DiscFamily { moves: moves.map(|&segment| DiscMove::constant(segment, 5.0, MoveIndex(0))).collect() }
     }
 
     fn side(paths: Vec<Path>, path: &Path) -> WorkingSide {

@@ -6,12 +6,12 @@
 //! - D is 1-Lipschitz, so a point at depth h under the edge has no edge nearer than h: the stretch of
 //!   length h to each side of it is covered.
 //! - A straight piece meets the disc sweep of one straight move in a single interval, because that
-//!   sweep is convex; the whole interval is covered.
+//!   sweep is convex; the whole interval is covered. (Asked only of moves of constant radius.)
 //!
 //! Only stretches covered by more than `margin` are removed, so nothing within rounding of the edge is.
 
 use crate::geometry::{Line, Segment, Vec2};
-use crate::view::DiscFamily;
+use crate::view::{DiscFamily, DiscMove};
 
 use super::clearance::Clearance;
 
@@ -49,7 +49,7 @@ pub(crate) fn open_parts(
         let at = piece.point_at(middle);
         let deep = clearance.below(at, -margin).filter(|c| c.clearance < -margin);
         let Some(deep) = deep else {
-            let radius = family.moves.first().map_or(0.0, |m| m.radius);
+            let radius = family.moves.first().map_or(0.0, DiscMove::greatest_radius);
             if halved < HALVINGS && (part.to - part.from) * length > 2.0 * radius {
                 let [a, b] = part.cut;
                 pile.push((Open { from: middle, to: part.to, cut: [false, b] }, halved + 1));
@@ -63,6 +63,7 @@ pub(crate) fn open_parts(
         let (mut low, mut high) = (middle - step, middle + step);
         if let (Segment::Line(line), Some(m)) = (piece, family.moves.get(deep.source))
             && let Segment::Line(under) = &m.segment
+            && m.is_constant()
             && let Some((from, to)) = covered_interval(line, under, m.radius - margin)
         {
             low = low.min(from);

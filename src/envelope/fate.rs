@@ -10,7 +10,7 @@
 use std::ops::Range;
 
 use crate::geometry::{BoxIndex, Rect};
-use crate::view::DiscFamily;
+use crate::view::{DiscFamily, DiscMove};
 
 use super::clearance::Clearance;
 use super::raw::{RawEdge, Ring};
@@ -53,7 +53,7 @@ impl Blocks {
             }
             moves = Some(r.moves.clone());
         }
-        let radius = family.moves.iter().map(|m| m.radius).fold(0.0, f64::max);
+        let radius = family.moves.iter().map(DiscMove::greatest_radius).fold(0.0, f64::max);
         Self { index: BoxIndex::new(&boxes), ring, radius }
     }
 

@@ -106,10 +106,7 @@ impl SweptRegion {
             if d.abs() > self.bound {
                 return Err(Broken::OffEdge { at, clearance: d });
             }
-            let off = family
-                .moves
-                .get(piece.source)
-                .map_or(f64::INFINITY, |m| (m.segment.distance(at) - m.radius).abs());
+            let off = family.moves.get(piece.source).map_or(f64::INFINITY, |m| m.clearance(at).abs());
             if off > self.bound {
                 return Err(Broken::WrongSource { at, off });
             }

@@ -7,6 +7,7 @@
 mod arrangement;
 mod clearance;
 mod cover;
+mod family;
 mod fate;
 mod invariants;
 mod link;
@@ -16,9 +17,11 @@ mod run;
 mod seat;
 mod strands;
 mod sweep;
+mod taper;
 
 pub(crate) use arrangement::{Arrangement, Fragment, Strand};
 pub use clearance::{Clear, Clearance};
+pub use family::sweep_laws;
 pub use invariants::Broken;
 pub(crate) use link::{Choice, loops};
 pub use region::{EdgeLoop, EdgePiece, SweptRegion};

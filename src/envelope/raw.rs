@@ -16,7 +16,7 @@
 use std::f64::consts::PI;
 
 use crate::geometry::{Arc, Line, Offset, Point, Segment, Vec2};
-use crate::view::DiscFamily;
+use crate::view::{DiscFamily, DiscMove};
 
 use super::run::Run;
 
@@ -87,7 +87,24 @@ impl RawEdge {
         let mut edge = Self::default();
         let mut chain: Vec<(u32, Segment)> = Vec::new();
         let mut radius = 0.0;
+        let mut taper: Vec<(u32, DiscMove)> = Vec::new();
         for (i, m) in (0u32..).zip(&family.moves) {
+            if !(m.is_constant() && taper.is_empty()) {
+                let follows = taper.last().is_some_and(|(_, b)| {
+                    (b.segment.end() - m.segment.start()).hypot() <= coincidence
+                        && b.end_radius.to_bits() == m.radius.to_bits()
+                });
+                if !follows || m.is_constant() {
+                    edge.tapered(&taper, coincidence);
+                    taper.clear();
+                }
+            }
+            if !m.is_constant() {
+                edge.chain(&chain, radius, coincidence);
+                chain.clear();
+                taper.push((i, *m));
+                continue;
+            }
             // Ends nearer than the coincidence length are one joint; joints go by number from here on.
             let follows =
                 chain.last().is_some_and(|(_, s)| (s.end() - m.segment.start()).hypot() <= coincidence)
@@ -105,6 +122,7 @@ impl RawEdge {
             }
         }
         edge.chain(&chain, radius, coincidence);
+        edge.tapered(&taper, coincidence);
         edge
     }
 
@@ -147,15 +165,16 @@ impl RawEdge {
                 outward: Outward::Right,
             });
         }
-        self.ring(start, chain, true);
+        if let (Some(first), Some(last)) = (chain.first(), chain.last()) {
+            self.ring(start, first.0..last.0 + 1, true);
+        }
     }
 
-    /// Notes that the pieces since `start` are one closed curve round `chain`.
-    fn ring(&mut self, start: usize, chain: &[(u32, Segment)], true_edge: bool) {
-        let (Some(first), Some(last)) = (chain.first(), chain.last()) else { return };
+    /// Notes that the pieces since `start` are one closed curve round `moves`.
+    pub(super) fn ring(&mut self, start: usize, moves: std::ops::Range<u32>, true_edge: bool) {
         let pieces = start..self.pieces.len();
         if !pieces.is_empty() {
-            self.rings.push(Ring { pieces, moves: first.0..last.0 + 1, true_edge });
+            self.rings.push(Ring { pieces, moves, true_edge });
         }
     }
 
@@ -165,7 +184,7 @@ impl RawEdge {
         let start = self.pieces.len();
         if chain.len() == 1 && is_point(&s, coincidence) {
             self.disc(first, s.start(), radius);
-            self.ring(start, chain, true);
+            self.ring(start, first..last + 1, true);
             return;
         }
         let closed = (s.start() - e.end()).hypot() <= coincidence;
@@ -182,7 +201,7 @@ impl RawEdge {
         }
         if closed {
             pen.close();
-            self.ring(start, chain, false);
+            self.ring(start, first..last + 1, false);
             pen = Pen::new(self, radius, coincidence);
         }
         for (k, &(i, m)) in chain.iter().enumerate().rev() {
@@ -196,11 +215,11 @@ impl RawEdge {
         }
         let start = pen.first_piece;
         pen.close();
-        self.ring(start, chain, false);
+        self.ring(start, first..last + 1, false);
     }
 
     /// A disc that stands still.
-    fn disc(&mut self, source: u32, center: Point, radius: f64) {
+    pub(super) fn disc(&mut self, source: u32, center: Point, radius: f64) {
         let (a, b) = (center + Vec2::new(radius, 0.0), center - Vec2::new(radius, 0.0));
         let first = self.joints.len() as u32;
         self.joints.extend([a, b]);
@@ -255,22 +274,22 @@ enum Flank {
 }
 
 /// Draws one closed curve, piece after piece, handing out the numbers of its joints.
-struct Pen<'a> {
+pub(super) struct Pen<'a> {
     edge: &'a mut RawEdge,
     radius: f64,
     coincidence: f64,
-    first_piece: usize,
+    pub(super) first_piece: usize,
     first_joint: u32,
 }
 
 impl<'a> Pen<'a> {
-    fn new(edge: &'a mut RawEdge, radius: f64, coincidence: f64) -> Self {
+    pub(super) fn new(edge: &'a mut RawEdge, radius: f64, coincidence: f64) -> Self {
         let (first_piece, first_joint) = (edge.pieces.len(), edge.joints.len() as u32);
         Self { edge, radius, coincidence, first_piece, first_joint }
     }
 
     /// Appends a piece; too short a one is dropped, the next one then starts at the same joint.
-    fn push(&mut self, segment: Segment, source: u32, outward: Outward) {
+    pub(super) fn push(&mut self, segment: Segment, source: u32, outward: Outward) {
         if segment.length() <= self.coincidence {
             return;
         }
@@ -331,7 +350,7 @@ impl<'a> Pen<'a> {
     }
 
     /// Lets the last piece end at the joint where the first one starts.
-    fn close(self) {
+    pub(super) fn close(self) {
         if self.edge.pieces.len() > self.first_piece {
             self.edge.joints.pop();
             if let Some(last) = self.edge.pieces.last_mut() {

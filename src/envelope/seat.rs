@@ -45,6 +45,8 @@ impl Seated {
     fn push(&mut self, m: DiscMove, source: u32) {
         if let (Some(last), Some(span)) = (self.local.moves.last_mut(), self.spans.last_mut())
             && span.0 + span.1 == source
+            && last.is_constant()
+            && m.is_constant()
             && last.radius.to_bits() == m.radius.to_bits()
             && let Some(joined) = continued(&last.segment, &m.segment)
         {

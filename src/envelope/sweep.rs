@@ -11,6 +11,7 @@ use crate::view::DiscFamily;
 
 use super::arrangement::Arrangement;
 use super::clearance::Clearance;
+use super::family::{has_curved_tapers, sweep_straightened};
 use super::link::{Choice, balance, loops};
 use super::raw::{Raw, RawEdge};
 use super::region::{EdgeLoop, EdgePiece, SweptRegion};
@@ -44,10 +45,16 @@ const CHANGEABLE: f64 = 512.0;
 /// Slots narrower than [`Tolerances::depth`] count as closed, and so do holes thinner than that: the
 /// region is a closed set, two discs that touch leave no gap. An empty family sweeps nothing.
 ///
+/// Moves on arcs whose radius changes have an edge of neither lines nor arcs: it is followed within
+/// [`crate::tolerance::CURVE_ERROR_MM`], on either side, and the region's bound says so.
+///
 /// # Errors
 /// When loops cannot be closed within rounding; the place is named. No force is used to hide it.
 pub fn sweep(family: &DiscFamily) -> Result<SweptRegion, SweepError> {
     let Some(bounds) = family.bounds() else { return Ok(SweptRegion::default()) };
+    if has_curved_tapers(family) {
+        return sweep_straightened(family);
+    }
     let origin = local_origin(bounds);
     let shift = -origin.to_vec2();
     let far = bounds.x0.abs().max(bounds.x1.abs()).max(bounds.y0.abs()).max(bounds.y1.abs());

@@ -114,8 +114,7 @@ mod tests {
 
     #[test]
     fn a_computed_edge_reads_back_with_its_area() {
-        let disc =
-            |segment| crate::view::DiscMove { segment, radius: 5.0, source: crate::program::MoveIndex(0) };
+        let disc = |segment| crate::view::DiscMove::constant(segment, 5.0, crate::program::MoveIndex(0));
         let path = sample::rounded(0.0)
             .into_iter()
             .chain([Segment::line(Point::new(8.0, 0.0), Point::new(60.0, 37.0))]);

@@ -248,8 +248,7 @@ pub fn swept() -> SweptSample {
     let (start, end) = (Point3::default(), Point3 { x: 30.0, y: 0.0, z: 0.0 });
     let made =
         Move { motion: Motion::Straight { start, end }, kind: MoveKind::Feed, tool: 1, block: BlockId(0) };
-    let disc =
-        DiscMove { segment: Segment::line(p(0.0, 0.0), p(30.0, 0.0)), radius: 5.0, source: MoveIndex(0) };
+    let disc = DiscMove::constant(Segment::line(p(0.0, 0.0), p(30.0, 0.0)), 5.0, MoveIndex(0));
     SweptSample {
         region,
         family: DiscFamily { moves: vec![disc] },

@@ -62,11 +62,9 @@ pub fn plan(
         let family = if m.kind == MoveKind::Feed { &mut view.cutting } else { &mut view.rapids };
         let tip = lowest(&m.motion);
         let radius = cutter.radius_at((level - tip).max(0.0));
-        family.moves.extend(pieces.iter().map(|&segment| DiscMove {
-            segment,
-            radius,
-            source: MoveIndex(source),
-        }));
+        family
+            .moves
+            .extend(pieces.iter().map(|&segment| DiscMove::constant(segment, radius, MoveIndex(source))));
     }
     Ok(view)
 }

@@ -14,7 +14,7 @@ use sweptedge::view::{DiscFamily, DiscMove};
 
 /// A family from segments.
 pub fn family(segments: &[Segment], radius: f64) -> DiscFamily {
-    let moves = (0..).zip(segments).map(|(i, &segment)| DiscMove { segment, radius, source: MoveIndex(i) });
+    let moves = (0..).zip(segments).map(|(i, &segment)| DiscMove::constant(segment, radius, MoveIndex(i)));
     DiscFamily { moves: moves.collect() }
 }
 
@@ -25,7 +25,7 @@ pub fn polyline(points: &[(f64, f64)]) -> Vec<Segment> {
 
 /// Clearance by brute force.
 pub fn clearance(family: &DiscFamily, p: Point) -> f64 {
-    family.moves.iter().map(|m| m.segment.distance(p) - m.radius).fold(f64::INFINITY, f64::min)
+    family.moves.iter().map(|m| m.clearance(p)).fold(f64::INFINITY, f64::min)
 }
 
 /// How often the loops of a region wind round a point: the angles its pieces are seen under, summed.
@@ -175,4 +175,121 @@ pub fn as_source(path: &[Segment], radius: f64) -> String {
         };
     }
     text + "];"
+}
+
+/// Clearance by the discs themselves: the least over many of each move, the best of them refined by
+/// golden section. No closed form.
+pub fn sampled_clearance(family: &DiscFamily, p: Point) -> f64 {
+    const DISCS: u32 = 64;
+    let one = |m: &DiscMove| {
+        let value = |t: f64| (p - m.segment.point_at(t)).hypot() - (m.radius + (m.end_radius - m.radius) * t);
+        let step = 1.0 / f64::from(DISCS);
+        let at = (0..=DISCS).map(|i| f64::from(i) * step);
+        let best = at.min_by(|a, b| value(*a).total_cmp(&value(*b))).unwrap_or(0.0);
+        let (mut low, mut high) = ((best - step).max(0.0), (best + step).min(1.0));
+        for _ in 0..60 {
+            let (a, b) = (low + 0.382 * (high - low), low + 0.618 * (high - low));
+            if value(a) < value(b) { high = b } else { low = a }
+        }
+        value(0.5 * (low + high)).min(value(best))
+    };
+    family.moves.iter().map(one).fold(f64::INFINITY, f64::min)
+}
+
+/// Random straight and curved moves of varying radius. On a lattice nested discs, discs that touch from
+/// inside, equal discs, radii of zero, plunges that only grow and retraced moves are common.
+pub fn random_taper(rng: &mut Rng, lattice: bool, noise: f64) -> Vec<DiscMove> {
+    let most = if rng.u8(..) < 40 { 16 } else { 6 };
+    let count = rng.usize(1..=most);
+    let number = |rng: &mut Rng, range: f64| {
+        let v = (rng.f64() * 2.0 - 1.0) * range;
+        if lattice { v.round() + noise * (rng.f64() - 0.5) } else { v }
+    };
+    let size = |rng: &mut Rng| {
+        if lattice {
+            ([0.0, 0.0, 0.5, 1.0, 1.0, 2.0, 3.0][rng.usize(0..7)] + noise * (rng.f64() - 0.5)).max(0.0)
+        } else if rng.u8(..) < 30 {
+            0.0
+        } else {
+            3.0 * rng.f64()
+        }
+    };
+    let (mut at, mut radius) = (Point::new(number(rng, 6.0), number(rng, 6.0)), size(rng));
+    let first = (at, radius);
+    let mut moves: Vec<DiscMove> = Vec::new();
+    while moves.len() < count {
+        let source = MoveIndex(moves.len() as u32);
+        let straight = |end: Point, end_radius: f64| DiscMove {
+            segment: Segment::line(at, end),
+            radius,
+            end_radius,
+            source,
+        };
+        let next = match rng.u8(..100) {
+            0..50 => straight(Point::new(number(rng, 6.0), number(rng, 6.0)), size(rng)),
+            // The disc stays as large: a constant move among tapered ones.
+            50..62 => straight(Point::new(number(rng, 6.0), number(rng, 6.0)), radius),
+            // It touches the disc before from inside, or swallows it.
+            62..70 => {
+                let end = at + Vec2::new(number(rng, 2.0), number(rng, 2.0));
+                let grown = (end - at).hypot() + if rng.bool() { 0.0 } else { 0.5 };
+                straight(end, if rng.bool() { radius + grown } else { (radius - grown).max(0.0) })
+            }
+            70..76 => match moves.last() {
+                Some(last) => last.reversed(),
+                None => continue,
+            },
+            76..82 => straight(at, size(rng)),
+            82..89 => straight(first.0, first.1),
+            89..94 => {
+                // A jump: the next move starts elsewhere.
+                (at, radius) = (Point::new(number(rng, 6.0), number(rng, 6.0)), size(rng));
+                continue;
+            }
+            _ => {
+                // Straight on, at the same taper: the same two tangents.
+                let Some(last) = moves.last() else { continue };
+                let way = last.segment.end() - last.segment.start();
+                straight(at + way, (2.0 * last.end_radius - last.radius).max(0.0))
+            }
+        };
+        if next.is_constant() && next.radius <= 1e-3 {
+            continue;
+        }
+        (at, radius) = (next.segment.end(), next.end_radius);
+        moves.push(next);
+    }
+    moves
+}
+
+/// The fewest moves that still fail.
+pub fn reduced_moves(moves: &[DiscMove], fails: impl Fn(&[DiscMove]) -> bool) -> Vec<DiscMove> {
+    let mut best = moves.to_vec();
+    let mut run = best.len() / 2;
+    while run > 0 {
+        let mut at = 0;
+        while at < best.len() {
+            let mut without = best.clone();
+            without.drain(at..(at + run).min(best.len()));
+            if !without.is_empty() && fails(&without) {
+                best = without;
+            } else {
+                at += run;
+            }
+        }
+        run /= 2;
+    }
+    best
+}
+
+/// Straight moves of varying radius as Rust source, every digit kept.
+pub fn moves_as_source(moves: &[DiscMove]) -> String {
+    let line = |m: &DiscMove| {
+        let (a, b) = (m.segment.start(), m.segment.end());
+        format!(
+            "    taper(({:?}, {:?}), {:?}, ({:?}, {:?}), {:?}),\n",
+            a.x, a.y, m.radius, b.x, b.y, m.end_radius
+        )
+    };
+    format!("let moves = [\n{}];", moves.iter().map(line).collect::<String>())
 }

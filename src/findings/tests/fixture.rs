@@ -94,7 +94,7 @@ impl Case {
         };
         self.program.moves.push(Move { motion, kind, tool: 1, block: BlockId(source.0) });
         let family = if kind == MoveKind::Feed { &mut self.cutting } else { &mut self.rapids };
-        family.moves.push(DiscMove { segment, radius, source });
+        family.moves.push(DiscMove::constant(segment, radius, source));
     }
 
     pub fn judge(&self) -> Judgement {

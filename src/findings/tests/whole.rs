@@ -31,7 +31,7 @@ fn a_path_25_times_as_large_is_suspected_of_another_unit() {
     for scale in [25.4, 1.0 / 27.0] {
         let mut case = block_cut_at(0.0, scale);
         if scale < 1.0 {
-            case.cutting.moves.iter_mut().for_each(|m| m.radius = 0.1);
+            case.cutting.moves.iter_mut().for_each(|m| (m.radius, m.end_radius) = (0.1, 0.1));
             let ring = rectangle(0.0, 0.0, 100.0 * scale, 60.0 * scale);
             for (m, s) in case.cutting.moves.iter_mut().zip(ring.segments()) {
                 m.segment = *s;

@@ -6,7 +6,8 @@
 //! - D is 1-Lipschitz, so a point at depth h under the edge has no edge nearer than h: the stretch of
 //!   length h to each side of it is covered.
 //! - A straight piece meets the disc sweep of one straight move in a single interval, because that
-//!   sweep is convex; the whole interval is covered. (Asked only of moves of constant radius.)
+//!   sweep is convex; the whole interval is covered. (The discs of a linear radius too: |x - c(t)| - r(t)
+//!   is convex in x and t together, and so its least over t is convex in x.)
 //!
 //! Only stretches covered by more than `margin` are removed, so nothing within rounding of the edge is.
 
@@ -17,6 +18,9 @@ use super::clearance::Clearance;
 
 /// Longest bisection of a piece that shows no cover in its middle.
 const HALVINGS: u32 = 5;
+
+/// Halvings that find where a line leaves a disc's sweep: to 4e-6 of the part.
+const NARROWINGS: u32 = 18;
 
 /// Share of a part that one clearance question must remove to be worth the next one.
 const WORTHWHILE: f64 = 0.2;
@@ -63,17 +67,25 @@ pub(crate) fn open_parts(
         let (mut low, mut high) = (middle - step, middle + step);
         if let (Segment::Line(line), Some(m)) = (piece, family.moves.get(deep.source))
             && let Segment::Line(under) = &m.segment
-            && m.is_constant()
-            && let Some((from, to)) = covered_interval(line, under, m.radius - margin)
         {
-            low = low.min(from);
-            high = high.max(to);
+            if !m.is_constant() {
+                low = low.min(covered_until(line, m, margin, middle, part.from));
+                high = high.max(covered_until(line, m, margin, middle, part.to));
+            } else if let Some((from, to)) = covered_interval(line, under, m.radius - margin) {
+                low = low.min(from);
+                high = high.max(to);
+            }
         }
         // A shallow cover that hides only a little of a long part is left to the crossings: questions
-        // would nibble at it without end.
+        // would nibble at it without end. Discs of varying radius often pass through one point, with
+        // all their inner flanks; there a few more questions spare a crossing of each with each.
+        let mut halved = halved;
         if high.min(part.to) - low.max(part.from) < WORTHWHILE * (part.to - part.from) {
-            append(open, first, part);
-            continue;
+            if family.moves.get(deep.source).is_none_or(DiscMove::is_constant) || halved >= HALVINGS {
+                append(open, first, part);
+                continue;
+            }
+            halved += 1;
         }
         let [a, b] = part.cut;
         if high < part.to {
@@ -95,6 +107,21 @@ fn append(open: &mut Vec<Open>, first: usize, part: Open) {
         }
         _ => open.push(part),
     }
+}
+
+/// How far from `inside` towards `end` the line stays deeper than `margin` under the straight move `m`:
+/// at least as far as the parameter returned. Halving, for the depth is convex along the line.
+fn covered_until(line: &Line, m: &DiscMove, margin: f64, inside: f64, end: f64) -> f64 {
+    let deep = |t: f64| m.clearance(line.point_at(t)) < -margin;
+    if deep(end) {
+        return end;
+    }
+    let (mut covered, mut open) = (inside, end);
+    for _ in 0..NARROWINGS {
+        let middle = 0.5 * (covered + open);
+        if deep(middle) { covered = middle } else { open = middle }
+    }
+    covered
 }
 
 /// Interval of parameters in which `line` lies within `radius` of `under`: the sweep of a disc along a

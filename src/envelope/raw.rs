@@ -89,6 +89,9 @@ impl RawEdge {
         let mut radius = 0.0;
         let mut taper: Vec<(u32, DiscMove)> = Vec::new();
         for (i, m) in (0u32..).zip(&family.moves) {
+            if m.greatest_radius() <= coincidence {
+                continue; // sweeps no area
+            }
             if !(m.is_constant() && taper.is_empty()) {
                 let follows = taper.last().is_some_and(|(_, b)| {
                     (b.segment.end() - m.segment.start()).hypot() <= coincidence

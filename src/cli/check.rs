@@ -37,7 +37,6 @@ pub fn check(check: &Check) -> Result<Report, Refusal> {
     };
     let part = Part::new(contour, keep, check.part.allowance, origins)
         .map_err(|e| vec![refused_part(&check.part.file, &e.to_string())])?;
-    warnings.extend(too_wide(&part, &view.cutting, &check.part.file, program.unit));
     let (limits, more) = limits(check.limits, program.unit, &check.program.file);
     warnings.extend(more);
     let swept = judge::sweep(&view.cutting, &program)?;
@@ -280,28 +279,6 @@ fn refused_part(drawing: &Named, what: &str) -> Problem {
         "",
         "run sweptedge inspect on the drawing to see its loops and layers, then choose with --layer or --keep",
     )
-}
-
-/// A warning when the cutter cannot stand in any opening of a pocket. By the openings' boxes, so it
-/// never warns without reason; a narrow slanted slot shows in the findings.
-fn too_wide(part: &Part, cutting: &DiscFamily, drawing: &Named, unit: Unit) -> Option<Problem> {
-    if part.keep != Keep::Outside {
-        return None;
-    }
-    let openings = part.contour.paths().iter().filter(|p| p.signed_area() < 0.0);
-    let widest = openings.map(|p| p.bounds().width().min(p.bounds().height())).reduce(f64::max)?;
-    let smallest = cutting.moves.iter().map(|m| 2.0 * m.radius).reduce(f64::min)?;
-    (smallest > widest).then(|| {
-        Problem::warning(
-            Place::file(&drawing.name),
-            format!(
-                "the cutter ({smallest} {u}) is wider than any opening of the part ({widest:.3} {u})",
-                u = unit.sign()
-            ),
-            "",
-            "take a smaller cutter, or check units and --keep",
-        )
-    })
 }
 
 /// Limits for acceptance; what was not said is assumed, and said.

@@ -24,6 +24,7 @@ pub(super) fn warnings(scene: &Scene<'_>) -> Vec<Problem> {
             out.push(problem);
         } else {
             out.extend(elsewhere(scene, part, path));
+            out.extend(wrong_side(scene));
         }
     }
     out.extend(wider_than_openings(scene));
@@ -94,6 +95,19 @@ fn elsewhere(scene: &Scene<'_>, part: Rect, path: Rect) -> Option<Problem> {
             super::number_text(shift.y, unit)
         ),
     ))
+}
+
+/// The cutter's center runs inside the material all the way.
+fn wrong_side(scene: &Scene<'_>) -> Option<Problem> {
+    scene.runs_in_material().then(|| {
+        Problem::warning(
+            drawing(scene),
+            "the cutter's center runs inside the material all the way",
+            "a path beside the part",
+            "check --keep (auto takes the side on which the cutter does not run), and that the drawing lies where \
+             the program cuts",
+        )
+    })
 }
 
 /// A pocket whose every opening is narrower than the smallest cutter.

@@ -207,7 +207,8 @@ fn described(page: &mut Page, finding: &Finding, number: usize, report: &Report)
         page.line(&format!("{indent}{}", cut(&said, page.width.saturating_sub(indent.len()))));
     }
     if finding.blocks.len() > 3 {
-        page.paragraph(&indent, &format!("and {} blocks more", finding.blocks.len() - 3));
+        let more = finding.blocks.len() - 3;
+        page.paragraph(&indent, &format!("and {more} block{} more", if more == 1 { "" } else { "s" }));
     }
     page.paragraph(&indent, &format!("cause: {} ({})", cause_words(finding.cause), finding.cause.name()));
     page.paragraph(&indent, &format!("to do: {}", finding.remedy));
@@ -225,6 +226,8 @@ const fn cause_words(cause: Cause) -> &'static str {
         Cause::EntryOrExit => "the move that leads onto or off the contour",
         Cause::RapidThroughPart => "a rapid move runs through the part",
         Cause::TightTurn => "the path turns more tightly than the cutter's radius",
+        Cause::PathOffContour => "the path does not keep the cutter's radius from the contour",
+        Cause::ArcWrongWay => "an arc turns the wrong way",
         Cause::Unknown => "none that the geometry could name",
     }
 }

@@ -2,5 +2,6 @@
 
 mod causes;
 mod fixture;
+mod paths;
 mod verdicts;
 mod whole;

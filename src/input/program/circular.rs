@@ -32,7 +32,7 @@ impl Interpreter<'_> {
             self.arrive(target);
             return Ok(());
         }
-        self.assume_start(line, words);
+        self.assume_start(line, words)?;
         let before = self.position;
         self.arrive(target);
         let after = self.position;

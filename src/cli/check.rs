@@ -216,13 +216,17 @@ fn nothing_cuts(program: &Program, level: f64, top: f64) -> Problem {
         ),
         Some(z) if level < top => Problem::error(
             place,
-            format!("no cutting move goes below the level Z{level}: the lowest tip of a feed move is at Z{z:.3}"),
+            format!(
+                "no cutting move goes below the level Z{level}: the lowest tip of a feed move is at Z{z:.3}"
+            ),
             "a tip below the height at which to look",
             format!("look higher up, above Z{z:.3}, with --level Z"),
         ),
         Some(z) => Problem::error(
             place,
-            format!("no cutting move goes below the part's top, Z{top}: the lowest tip of a feed move is at Z{z:.3}"),
+            format!(
+                "no cutting move goes below the part's top, Z{top}: the lowest tip of a feed move is at Z{z:.3}"
+            ),
             "a tip below the part's top",
             "say where the top of the part is with --top Z (and the height to look at with --level Z)",
         ),

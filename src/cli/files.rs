@@ -63,7 +63,7 @@ fn unreadable(file: &Named, error: &std::io::Error) -> Problem {
         .unwrap_or_default();
     there.sort_unstable();
     let help = match nearest(&wanted, there.iter().map(String::as_str)) {
-        Some(name) => format!("did you mean {}?", folder.join(name).display()),
+        Some(name) => format!("did you mean {}?", file.path.with_file_name(name).display()),
         None => format!("check the name; the folder searched is {}", folder.display()),
     };
     Problem::error(place, "there is no such file", "", help)

@@ -189,7 +189,8 @@ impl<'a> Scene<'a> {
             .or_else(|| self.entry_too_deep(gouge))
             .or_else(|| self.too_narrow(&draft))
             .unwrap_or(Diagnosis::Unknown);
-        if let (Diagnosis::Unknown, Some((near, by))) = (draft.diagnosis, self.too_near(&draft, gouge.moves)) {
+        if let (Diagnosis::Unknown, Some((near, by))) = (draft.diagnosis, self.too_near(&draft, gouge.moves))
+        {
             draft.diagnosis = near;
             draft.culprits = vec![(gouge.depth.size, by)];
         }

@@ -26,11 +26,10 @@ impl Scene<'_> {
         let other = other_way(arc, self.cuts.text(gouge.worst_move).is_some_and(|t| says_radius(&t)))?;
         let away = self.cuts.radius(gouge.worst_move) + self.facts.part.allowance;
         let slack = self.facts.limits.gouge.max(1e-3 * gouge.depth.size);
-        let clears =
-            (0..=TRIED).all(|k| self.off_wall(other.point_at(f64::from(k) / f64::from(TRIED))) >= away - slack);
+        let clears = (0..=TRIED)
+            .all(|k| self.off_wall(other.point_at(f64::from(k) / f64::from(TRIED))) >= away - slack);
         let smoother = self.bend(gouge.worst_move, &other) + LEAST_GAIN < self.bend(gouge.worst_move, arc);
-        (clears && smoother)
-            .then_some(Diagnosis::WrongWay { left: arc.sweep() > 0.0 })
+        (clears && smoother).then_some(Diagnosis::WrongWay { left: arc.sweep() > 0.0 })
     }
 
     /// How much the path turns, in radians, where `arc` in place of move `i` meets its neighbours.

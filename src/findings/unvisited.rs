@@ -29,7 +29,9 @@ impl Words<'_> {
                 length_text(2.0 * radius, self.unit),
                 point_text(center, self.unit)
             ),
-            None => format!("{} by {}", length_text(b.width(), self.unit), length_text(b.height(), self.unit)),
+            None => {
+                format!("{} by {}", length_text(b.width(), self.unit), length_text(b.height(), self.unit))
+            }
         };
         let wide = if self.too_wide(d) { format!("; {cutter} is too wide for it") } else { String::new() };
         format!(": the program never comes near {what} {number} of the drawing, {shape}{wide}.")

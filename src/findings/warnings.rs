@@ -28,6 +28,7 @@ pub(super) fn warnings(scene: &Scene<'_>) -> Vec<Problem> {
         }
     }
     out.extend(wider_than_openings(scene));
+    out.extend(allowance_cut(scene));
     out.extend(left_out(scene));
     out
 }
@@ -132,6 +133,27 @@ fn wider_than_openings(scene: &Scene<'_>) -> Option<Problem> {
         ),
         "an opening that the cutter can enter",
         "check --diameter, and --keep: with the material inside, the same loops are an outside profile",
+    ))
+}
+
+/// Most of the stock that was to be left is cut away nearly everywhere.
+fn allowance_cut(scene: &Scene<'_>) -> Option<Problem> {
+    let (allowance, unit) = (scene.facts.part.allowance, scene.facts.unit);
+    let deviation = scene.facts.comparison.deviation?;
+    let missing = -deviation.median;
+    if !(allowance > 0.0 && missing > 0.5 * allowance && deviation.share >= 0.6) {
+        return None;
+    }
+    Some(Problem::warning(
+        drawing(scene),
+        format!(
+            "the allowance is not left: about {} of {} is cut away along {:.0} % of the contour that is cut",
+            length_text(missing.min(allowance), unit),
+            length_text(allowance, unit),
+            100.0 * deviation.share.clamp(0.0, 1.0)
+        ),
+        "a path that leaves the allowance standing",
+        "nothing, if this is the finishing pass: then leave --allowance out; else check the cutter and the wear offset",
     ))
 }
 

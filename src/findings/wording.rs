@@ -328,7 +328,10 @@ impl<'a> Words<'a> {
             return format!("{word} the cut of {lines} at least {by} {way}, nearer to the wall.");
         }
         let more = d.contour.map_or(d.figure.size, |c| Walls::stretch_length(&c));
-        format!("{word} the cut of {lines} up to {} {way} along the contour, so that it overlaps.", self.up(more))
+        format!(
+            "{word} the cut of {lines} up to {} {way} along the contour, so that it overlaps.",
+            self.up(more)
+        )
     }
 
     fn remedy_no_pass(&self, d: &Draft) -> String {

@@ -79,7 +79,8 @@ pub fn plan(
 /// before did there is told of that move.
 fn rises_in_place(program: &Program, source: u32, m: &Move) -> bool {
     let (start, end) = (m.motion.start(), m.motion.end());
-    let before = usize::try_from(source).ok().and_then(|i| i.checked_sub(1)).and_then(|i| program.moves.get(i));
+    let before =
+        usize::try_from(source).ok().and_then(|i| i.checked_sub(1)).and_then(|i| program.moves.get(i));
     m.kind == MoveKind::Rapid
         && start.plan() == end.plan()
         && end.z >= start.z
@@ -212,7 +213,10 @@ mod tests {
     fn a_ramp_counts_only_from_where_it_dips_below_the_level() {
         let ramp = straight(at(0.0, 0.0, 1.0), &[(at(40.0, 0.0, -3.0), MoveKind::Feed, 1)]);
         let view = seen(&ramp, 0.0);
-        assert_eq!(view.cutting.moves[0].segment, Segment::line(Point::new(10.0, 0.0), Point::new(40.0, 0.0)));
+        assert_eq!(
+            view.cutting.moves[0].segment,
+            Segment::line(Point::new(10.0, 0.0), Point::new(40.0, 0.0))
+        );
         assert!(seen(&ramp, -3.0).cutting.moves.is_empty());
     }
 

@@ -63,7 +63,10 @@ fn one_straight_move_across_a_round_corner_is_a_chord_of_14_off_by_4_1() {
         vec![gouge(4.100_505, p(59.0, 39.0), p(57.657, 37.657), 1, stretch(0, 32.0, 44.0))];
     let f = case.only();
     assert_eq!(f.cause, Cause::ChordsTooLong);
-    holds(&f.message, &["in line 11 a straight move of 19.799 mm cuts across a curve, up to 4.101 mm off it"]);
+    holds(
+        &f.message,
+        &["in line 11 a straight move of 19.799 mm cuts across a curve, up to 4.101 mm off it"],
+    );
     holds(&f.remedy, &["arcs (G2, G3)", "radius of 14.000 mm"]);
 }
 
@@ -134,8 +137,7 @@ fn a_cut_that_stops_short_of_the_end_wall_is_told_to_go_nearer_by_what_is_left()
 #[test]
 fn a_cutter_25_times_too_large_is_taken_for_millimetres_in_an_inch_program() {
     let wall = Path::new(lines(&[p(0.0, 0.0), p(4.0, 0.0)]), false).unwrap();
-    let mut case =
-        Case::new(part(vec![wall], Keep::Right, 0.0), &lines(&[p(0.0, 0.25), p(4.0, 0.25)]), 6.35);
+    let mut case = Case::new(part(vec![wall], Keep::Right, 0.0), &lines(&[p(0.0, 0.25), p(4.0, 0.25)]), 6.35);
     case.unit = crate::program::Unit::Inch;
     case.comparison.gouges = vec![gouge(6.1, p(2.0, 0.25), p(2.0, 0.0), 0, stretch(0, 0.0, 4.0))];
     let f = case.only();

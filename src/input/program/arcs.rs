@@ -171,7 +171,8 @@ impl Commanded {
                 .to_owned();
         }
         if off > ROUNDING * limits.standard {
-            return "correct the end, the center, or the end of the move before it, where the arc starts".to_owned();
+            return "correct the end, the center, or the end of the move before it, where the arc starts"
+                .to_owned();
         }
         let wide = (off * limits.to_block * 1e5).ceil() / 1e5;
         format!(

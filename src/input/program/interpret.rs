@@ -221,6 +221,9 @@ impl<'a> Interpreter<'a> {
                     return Err(from_fixed_point(words));
                 }
                 self.assume(line, span, axis);
+                if !self.position.known.get(axis).copied().unwrap_or(false) {
+                    continue;
+                }
                 to += self.position.at.get(axis).copied().unwrap_or(0.0);
             }
             *slot = Some(within(to, span)?);
@@ -256,10 +259,11 @@ impl<'a> Interpreter<'a> {
         if *known {
             return;
         }
-        *known = true;
+        // After an error nothing is assumed: a wrong guess would only make errors of sound blocks.
         if self.faults.refused() {
             return;
         }
+        *known = true;
         if axis == 2 {
             self.faults.note(Note::HeightAssumed, line, span, || {
                 let found = "a move starts at a height the program has not said: taken as Z 0".to_owned();

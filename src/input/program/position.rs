@@ -53,6 +53,16 @@ impl Position {
         x && y
     }
 
+    /// Are both its coordinates in a plane known?
+    pub const fn knows(&self, plane: Plane) -> bool {
+        let [x, y, z] = self.known;
+        match plane {
+            Plane::Xy => x && y,
+            Plane::Zx => z && x,
+            Plane::Yz => y && z,
+        }
+    }
+
     /// Is Z known?
     pub const fn knows_height(&self) -> bool {
         self.known[2]

@@ -48,7 +48,10 @@ impl Interpreter<'_> {
         if !clear {
             return Err(Fault::new(
                 words.extent(),
-                format!("{} leaves for a point of the machine from cutting depth", codes::name('G', code.tenths)),
+                format!(
+                    "{} leaves for a point of the machine from cutting depth",
+                    codes::name('G', code.tenths)
+                ),
                 "a retract of Z before it",
                 "retract first, with G0 Z above the part or G91 G28 Z0 in a block of its own",
             ));

@@ -130,7 +130,9 @@ impl Rule {
     /// What is wrong with `value`, which stands at `place` under `name`; `None` when nothing is.
     pub fn broken(self, name: &str, value: f64, place: &Place) -> Option<Problem> {
         let (fine, expected) = match self {
-            _ if value.is_finite() && value.abs() > GREATEST_COORDINATE => (false, "a number up to 1e9 either way"),
+            _ if value.is_finite() && value.abs() > GREATEST_COORDINATE => {
+                (false, "a number up to 1e9 either way")
+            }
             Self::Positive => (value > 0.0, "a length greater than zero"),
             Self::NotNegative => (value >= 0.0, "a length of zero or more"),
             Self::Any => (true, "a finite number"),

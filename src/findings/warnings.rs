@@ -44,7 +44,8 @@ fn box_text(b: Rect, unit: Unit) -> String {
 /// Are the contour and the path as large as one in inches and one in millimetres would be?
 fn other_unit(scene: &Scene<'_>, part: Rect, path: Rect) -> Option<Problem> {
     let (a, b) = (part.width().max(part.height()), path.width().max(path.height()));
-    if !scene.all_unvisited() && scene.facts.comparison.gouges.is_empty() {
+    let comparison = scene.facts.comparison;
+    if !scene.all_unvisited() && comparison.gouges.is_empty() && comparison.excesses.is_empty() {
         return None;
     }
     let near = |ratio: f64| (MM_PER_INCH / UNIT_SLACK..=MM_PER_INCH * UNIT_SLACK).contains(&ratio);

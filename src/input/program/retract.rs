@@ -2,7 +2,7 @@
 //! not say, so a move there can be judged only when it goes straight up: `G91 G28 Z0` sweeps nothing
 //! new, and Z is unknown afterwards. X and Y may follow once Z is up. A bare G28 and `G91 G28 X0 Y0 Z0`
 //! send all axes together on a course of which only its start is known: taken, with a warning, where the
-//! tool stands no lower than any feed move ended, as at the end of a program. No cut may begin at
+//! tool stands above the end of every feed move, as at the end of a program. No cut may begin at
 //! the fixed point. Anything else is refused. That the machine's Z zero is the top of its travel is common
 //! practice, no single source; a warning says so.
 
@@ -43,7 +43,7 @@ impl Interpreter<'_> {
     fn home_together(&mut self, line: Line<'_>, words: &Words, code: Code) -> Result<(), Fault> {
         let position = self.position;
         let clear = position.retracted
-            || position.knows_height() && self.moves.none_ends_above(position.point().z)
+            || position.knows_height() && self.moves.all_end_below(position.point().z)
             || !self.moves.says_z;
         if !clear {
             return Err(Fault::new(

@@ -176,7 +176,7 @@ fn a_return_of_all_axes_at_the_end_is_taken_with_a_warning_when_the_tool_stands_
     for end in [
         "G28",
         "G91 G28 X0 Y0 Z0",
-        "G91 G28 Z0 X0. Y0.",
+        "G0 Z-1\nG1 Z2\nG91 G28 Z0 X0. Y0.",
         "G91 G28 Z0\nG28",
         "G91 G28 Z0\nG28 X0 Y0",
         "G28\nG90 G0 X5 Y5\nG0 Z5\nG1 Z-1\nG0 Z5\nG28",
@@ -194,8 +194,10 @@ fn a_return_of_all_axes_at_the_end_is_taken_with_a_warning_when_the_tool_stands_
 #[test]
 fn a_return_of_all_axes_from_cutting_depth_is_refused() {
     for end in ["G28", "G91 G28 X0 Y0 Z0"] {
-        let text = format!("G21 G90 G0 X0 Y0 Z5\nG1 Z-1 F100\nG1 X20 Z0\nG1 Z-2\n{end}\nM30");
-        assert!(shown(&refused(text.as_bytes())).contains("from cutting depth"), "{end}");
+        for cut in ["G1 X20 Z0\nG1 Z-2", "G1 X20", "G1 Z-3\nG1 X5\nG1 Z-1\nG1 X9 Z-1"] {
+            let text = format!("G21 G90 G0 X0 Y0 Z5\nG1 Z-1 F100\n{cut}\n{end}\nM30");
+            assert!(shown(&refused(text.as_bytes())).contains("from cutting depth"), "{cut} {end}");
+        }
     }
 }
 

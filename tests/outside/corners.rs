@@ -24,11 +24,7 @@ fn wedge(angle: f64, fillet: f64) -> (Part, Vec<Segment>) {
     let contour: Path = if fillet > 0.0 {
         let set = fillet / half.tan();
         let rounding = arc(p(fillet / half.sin(), 0.0), at(u, set), at(v, set), Turn::Left);
-        open(vec![
-            Segment::line(at(u, 40.0), at(u, set)),
-            rounding,
-            Segment::line(at(v, set), at(v, 40.0)),
-        ])
+        open(vec![Segment::line(at(u, 40.0), at(u, set)), rounding, Segment::line(at(v, set), at(v, 40.0))])
     } else {
         open(lines(&[at(u, 40.0), p(0.0, 0.0), at(v, 40.0)]))
     };
@@ -64,7 +60,8 @@ fn sharp_corners_of_30_to_150_degrees() {
 
 #[test]
 fn corners_with_a_fillet_smaller_than_the_cutter() {
-    for (degrees, fillet) in [(30.0f64, 0.5), (60.0, 0.25), (90.0, 0.4), (120.0, 0.9), (135.0, 0.2), (150.0, 0.1)]
+    for (degrees, fillet) in
+        [(30.0f64, 0.5), (60.0, 0.25), (90.0, 0.4), (120.0, 0.9), (135.0, 0.2), (150.0, 0.1)]
     {
         let angle = degrees.to_radians();
         let (part, path) = wedge(angle, fillet);

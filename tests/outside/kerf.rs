@@ -36,7 +36,12 @@ fn rectangle_of_30_by_20_cut_on_the_line_with_a_kerf_of_0_3() {
         KERF.holds("opening in the sheet: corner radius", 0.5 * k, radius, 1e-9);
     }
     KERF.holds("piece that drops out: width", 30.0 - k, slug.bounds().width(), 1e-9);
-    KERF.holds("piece that drops out: area, corners sharp", (30.0 - k) * (20.0 - k), -slug.signed_area(), 1e-9);
+    KERF.holds(
+        "piece that drops out: area, corners sharp",
+        (30.0 - k) * (20.0 - k),
+        -slug.signed_area(),
+        1e-9,
+    );
     KERF.says("piece that drops out: rounded corners", "0", &arcs(slug).len().to_string());
 }
 

@@ -14,9 +14,12 @@ mod formats;
 mod kerf;
 mod linearised;
 mod parabolas;
+mod polygon_library;
 mod polygons;
 mod programs;
 mod tolerances;
 
+#[path = "../oracle/mod.rs"]
+mod oracle;
 #[path = "../sheet/mod.rs"]
 mod sheet;

@@ -175,7 +175,11 @@ fn every_point_of_an_edge_swept_along_the_parabola_lies_on_the_sextic() {
             looked_at += 1;
         }
         assert!(looked_at > 1000, "only {looked_at} points of the edge were looked at");
-        SEXTIC.within(format!("d = {d}: greatest distance of {looked_at} points"), worst, bound + region.bound);
+        SEXTIC.within(
+            format!("d = {d}: greatest distance of {looked_at} points"),
+            worst,
+            bound + region.bound,
+        );
         let off = sextic(p(0.3, -0.5 * d), d).distance();
         assert!(off > 1e-3, "a point that is not on the offset must not pass: {off}");
     }

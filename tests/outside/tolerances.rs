@@ -60,6 +60,10 @@ fn corner_of_a_path_that_is_too_far_out_deviates_by_as_much_as_the_walls() {
     let part = part(closed(rectangle(30.0, 20.0, 0.0)), Keep::Inside);
     let found = judged(&part, &rectangle(30.0, 20.0, 4.03), 4.0, 0.01);
     let one = found.excesses.len() == 1 && found.excesses[0].whole_path;
-    PROFILE.says("path 0.03 too far out", "one stretch, whole loop", if one { "one stretch, whole loop" } else { "other" });
+    PROFILE.says(
+        "path 0.03 too far out",
+        "one stretch, whole loop",
+        if one { "one stretch, whole loop" } else { "other" },
+    );
     PROFILE.figure("path 0.03 too far out: greatest", 0.03, found.excesses[0].height, 1e-8);
 }

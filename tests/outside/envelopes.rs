@@ -59,7 +59,7 @@ fn ellipse_of_40_and_20_grown_and_shrunk_by_5() {
     let inner = area - 5.0 * perimeter + 25.0 * PI;
     STEINER.holds("ellipse 40, 20, shrunk by 5: area", inner, -hole.0, 1e-6);
     STEINER.holds("ellipse 40, 20, shrunk by 5: perimeter", perimeter - 10.0 * PI, hole.1, 1e-7);
-    STEINER.holds("ellipse 40, 20, shrunk by 5: area as published", 1622.969_117_16, -hole.0, 1e-6);
+    STEINER.holds("ellipse 40, 20, shrunk by 5: area as published", 1_622.969_117_16, -hole.0, 1e-6);
 }
 
 /// By the arithmetic-geometric mean (Gauss): 2 pi (a^2 - sum 2^(n-1) c_n^2) / agm.

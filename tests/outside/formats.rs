@@ -1,6 +1,6 @@
 //! Bulges, arcs and transforms of drawings, read by the readers.
 
-use std::f64::consts::PI;
+use std::f64::consts::{FRAC_1_SQRT_2, PI};
 
 use crate::build::*;
 use crate::sheet::Sheet;
@@ -55,9 +55,9 @@ fn bulges_of_30_to_270_degrees_have_the_published_radius_sagitta_and_length() {
     let table = [
         (30.0f64, 0.131_652_497_587, 1.931_851_652_58, 0.065_826_248_793_7),
         (45.0, 0.198_912_367_38, 1.306_562_964_88, 0.099_456_183_689_8),
-        (90.0, 0.414_213_562_373, 0.707_106_781_187, 0.207_106_781_187),
+        (90.0, 0.414_213_562_373, FRAC_1_SQRT_2, 0.207_106_781_187),
         (180.0, 1.0, 0.5, 0.5),
-        (270.0, 2.414_213_562_37, 0.707_106_781_187, 1.207_106_781_19),
+        (270.0, 2.414_213_562_37, FRAC_1_SQRT_2, 1.207_106_781_19),
     ];
     for (degrees, bulge, radius, sagitta) in table {
         for sign in [1.0, -1.0] {
@@ -191,7 +191,7 @@ fn transform_list_is_the_product_of_its_entries_from_the_left() {
         let (_, along_y) = ends(&contour.paths()[1]);
         let down = |q: Point| p(q.x, PAGE - q.y);
         let (origin, u, v) = (down(origin), down(along_x) - down(origin), down(along_y) - down(origin));
-        let root = std::f64::consts::FRAC_1_SQRT_2;
+        let root = FRAC_1_SQRT_2;
         let rows = [
             ("a", root, 0.1 * u.x),
             ("b", -root, 0.1 * u.y),

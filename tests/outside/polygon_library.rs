@@ -21,16 +21,19 @@ const FINEST: f64 = 0.01 * std::f64::consts::PI;
 /// How far inside the true edge its finest and its default buffers lie, as a share of the radius.
 const SHARES: [(&str, f64, f64); 2] = [("finest", FINEST, 1.3e-4), ("default", 0.2, 5.5e-3)];
 
-/// Greatest distance between an arc of the path and the chords given to the library.
-const CHORD: f64 = 1e-5;
+/// Greatest distance between an arc of the path and the chords given to the library. With finer ones it
+/// leaves stray slivers deep inside its buffers (seen at 3e-5, depth 0.25) and takes minutes.
+const CHORD: f64 = 2e-4;
 
-/// The path as chains of chords.
+/// The path as chains of chords. Where it turns back on itself a new chain begins: the library leaves the
+/// round at such a joint out (measured: a path of area 72.2668 by GEOS and by us comes out as 71.4130).
 fn chains(path: &[Segment]) -> MultiLineString<f64> {
     let mut chains: Vec<Vec<Coord<f64>>> = Vec::new();
-    let mut last: Option<Point> = None;
+    let mut last: Option<&Segment> = None;
     let coord = |q: Point| Coord { x: q.x, y: q.y };
     for s in path.iter().filter(|s| s.length() > 0.0) {
-        if last != Some(s.start()) {
+        let goes_on = |l: &Segment| l.end() == s.start() && l.tangent_at(1.0).dot(s.tangent_at(0.0)) > -0.98;
+        if !last.is_some_and(goes_on) {
             chains.push(vec![coord(s.start())]);
         }
         let count = match s {
@@ -39,7 +42,7 @@ fn chains(path: &[Segment]) -> MultiLineString<f64> {
         };
         let points = (1..=count).map(|k| coord(s.point_at(f64::from(k) / f64::from(count))));
         chains.last_mut().unwrap().extend(points);
-        last = Some(s.end());
+        last = Some(s);
     }
     MultiLineString(chains.into_iter().map(LineString).collect())
 }
@@ -84,7 +87,7 @@ fn areas_of_60_random_paths_exceed_the_librarys_by_no_more_than_its_chords() {
             least.min(0.0),
             1e-4,
         );
-        LIBRARY.within(format!("{name}: the same, greatest"), most, share + 1e-4);
+        LIBRARY.within(format!("{name}: the same, greatest"), most, share + 1e-3);
     }
 }
 
@@ -118,7 +121,15 @@ fn edges_of_50_random_paths_lie_between_the_librarys_for_a_smaller_and_a_larger_
         }
     }
     assert!(looked_at > 5000, "only {looked_at} points were looked at");
-    LIBRARY.says("points of our edge outside of theirs for r (1 + 1.3e-4)", "0", &outside.to_string());
-    LIBRARY.says("points of our edge inside theirs for r - 2e-5", "0", &inside.to_string());
+    LIBRARY.says(
+        "points of our edge outside of theirs for a radius larger by its chords",
+        "0",
+        &outside.to_string(),
+    );
+    LIBRARY.says(
+        "points of our edge inside theirs for a radius smaller by the path's chords",
+        "0",
+        &inside.to_string(),
+    );
     LIBRARY.says("points of their edge not between ours for these radii", "0", &theirs.to_string());
 }

@@ -71,7 +71,8 @@ fn a_wall_that_was_left_out_is_a_missed_pass() {
 #[test]
 fn chords_of_ten_degrees_outside_and_inside_of_a_circle_say_which_chords_would_do() {
     for (centers, keep, chord) in [(20.0, Keep::Inside, "1.264 mm"), (10.0, Keep::Outside, "0.894 mm")] {
-        let corner = |k: u32| Point::ORIGIN + centers * Vec2::from_angle(f64::from(k % 36) * 10f64.to_radians());
+        let corner =
+            |k: u32| Point::ORIGIN + centers * Vec2::from_angle(f64::from(k % 36) * 10f64.to_radians());
         let path: Vec<Point> = (0..=36).map(corner).collect();
         let mut case = Case::new(part(vec![circle(Point::ORIGIN, 15.0)], keep, 0.0), &lines(&path), 5.0);
         (case.limits.gouge, case.limits.excess) = (0.01, 0.01);

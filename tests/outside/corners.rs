@@ -34,7 +34,7 @@ fn wedge(angle: f64, fillet: f64) -> (Part, Vec<Segment>) {
 
 #[test]
 fn sharp_corners_of_30_to_150_degrees() {
-    let published = [
+    let listed = [
         (30.0f64, 2.863_703_305_16, 2.423_053_868_57, 3.732_050_807_57),
         (60.0, 1.0, 0.684_853_256_372, 1.732_050_807_57),
         (90.0, 0.414_213_562_373, 0.214_601_836_603, 1.0),
@@ -42,7 +42,7 @@ fn sharp_corners_of_30_to_150_degrees() {
         (135.0, 0.082_392_200_292_4, 0.021_514_480_674_4, 0.414_213_562_373),
         (150.0, 0.035_276_180_410_1, 0.006_149_804_631_97, 0.267_949_192_431),
     ];
-    for (degrees, distance, area, setback) in published {
+    for (degrees, distance, area, setback) in listed {
         let (part, path) = wedge(degrees.to_radians(), 0.0);
         let found = judged(&part, &path, 1.0, 1e-3);
         assert_eq!(found.excesses.len(), 1, "{degrees}: {found:#?}");
@@ -78,7 +78,7 @@ fn corners_with_a_fillet_smaller_than_the_cutter() {
 
 const INTERFERENCE: Sheet = Sheet::new(
     "Local and global interference",
-    "T. R. Kramer, F. M. Proctor, E. Messina, The NIST RS274NGC Interpreter, NISTIR 6556, 2000, appendix B.1 and \
+    "T. R. Kramer, F. M. Proctor, E. Messina, NISTIR 6556, National Institute of Standards and Technology, 2000, appendix B.1 and \
      figure 2 (rounded path keeps contact, extended path leaves it); the depths are derived.",
 );
 

@@ -82,9 +82,9 @@ const POCKET: Sheet = Sheet::new(
 fn path_trimmed_at_the_nodes_leaves_both_ends_of_the_pocket() {
     let d = 15.0;
     let node = ((A * A - B * B) * (1.0 - d * d / (B * B))).sqrt();
-    POCKET.holds("node on the long axis, closed form as published", 22.912_878_474_8, node, 1e-9);
+    POCKET.holds("node on the long axis, closed form", 22.912_878_474_8, node, 1e-9);
     let contact = p(node * A * A / (A * A - B * B), 12.909_944_487_4);
-    POCKET.holds("contact of the last circle, closed form as published", 30.550_504_633, contact.x, 1e-8);
+    POCKET.holds("contact of the last circle, closed form", 30.550_504_633, contact.x, 1e-8);
     let t = (contact.x / A).acos();
     let (right, left) = (p(node, 0.0), p(-node, 0.0));
     let (upper, bound) = offset(d, (t, PI - t), [right, left], Vec::new());

@@ -54,7 +54,10 @@ impl Sheet {
 
     /// The greatest of many distances, all of which should be zero.
     pub fn within(&self, what: impl Into<String>, greatest: f64, bound: f64) {
-        self.holds(what, 0.0, greatest, bound);
+        let (what, holds) = (what.into(), greatest <= bound);
+        let mark = if holds { "" } else { " FAILS" };
+        self.enter(format!("| {what} | 0 | {greatest:.1e} | {greatest:.1e} | {bound:.1e}{mark} |"));
+        assert!(holds, "{}: {what}: {greatest:e} is over {bound:e}", self.topic);
     }
 
     /// `got` must be `expected`, to the letter.

@@ -131,11 +131,13 @@ fn left_out(scene: &Scene<'_>) -> Option<Problem> {
         Problem::warning(
             drawing(scene),
             format!(
-                "{count} of the drawing's {} loops and chains are not judged: the program never comes near them",
-                scene.walls.contour().paths().len()
+                "{count} of the drawing's {} contours {} not judged: the program never comes near {}",
+                scene.walls.contour().paths().len(),
+                if count == 1 { "is" } else { "are" },
+                if count == 1 { "it" } else { "them" }
             ),
             "",
-            "make sure another tool or program cuts them; without --only-visited each one is a fault",
+            "make sure another tool or program cuts what is left out; without --only-visited it is a fault",
         )
     })
 }

@@ -12,7 +12,7 @@ fn the_verdict_and_worst_figure_stand_in_the_first_line() {
         first.as_deref(),
         Some("FAIL: the cutter goes 0.3100 mm too deep, 0.02 mm is allowed (finding 1)")
     );
-    assert!(text(&sample::passing()).starts_with("PASS: worst gouge 0.0000 of 0.02 mm"));
+    assert!(text(&sample::passing()).starts_with("PASS: gouge 0.0000 mm (0.02 allowed)"));
     assert!(text(&sample::undecided()).starts_with("UNDECIDED: "));
 }
 

@@ -182,7 +182,8 @@ fn links(text: &str) -> Vec<String> {
 fn anchors(text: &str) -> BTreeSet<String> {
     let headings = text.lines().filter(|l| l.starts_with('#')).map(|l| l.trim_start_matches('#').trim());
     let name = |h: &str| {
-        let kept: String = h.to_lowercase().chars().filter(|c| c.is_alphanumeric() || " -_".contains(*c)).collect();
+        let kept: String =
+            h.to_lowercase().chars().filter(|c| c.is_alphanumeric() || " -_".contains(*c)).collect();
         str::replace(&kept, ' ', "-")
     };
     headings.map(name).collect()

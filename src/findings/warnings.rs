@@ -88,10 +88,9 @@ fn elsewhere(scene: &Scene<'_>, part: Rect, path: Rect) -> Option<Problem> {
         ),
         "a contour beside the path of the cutter",
         format!(
-            "lay the drawing where the program cuts with --mirror, --turn and --shift (--shift {},{} would bring \
-             both middles together)",
-            super::number_text(shift.x, unit),
-            super::number_text(shift.y, unit)
+            "lay the drawing where the program cuts with --mirror, --turn and --shift (moved by {} from where it \
+             lies now, both middles would come together)",
+            point_text(shift.to_point(), unit)
         ),
     ))
 }

@@ -17,6 +17,9 @@ pub fn headline(report: &Report) -> String {
     };
     match named {
         Some((finding, number)) => format!("{} (finding {number})", sentence(finding, report.unit)),
+        None if report.verdict == Verdict::Undecided && report.worst.excess.is_none() => {
+            "nothing of the contour was judged, for the program comes near none of it".to_owned()
+        }
         None => figures(report),
     }
 }
@@ -78,7 +81,10 @@ mod tests {
 
     #[test]
     fn a_pass_names_every_figure_looked_for() {
-        assert_eq!(headline(&sample::passing()), "gouge 0.0000 mm (0.02 allowed), excess 0.0300 mm (0.05 allowed)");
+        assert_eq!(
+            headline(&sample::passing()),
+            "gouge 0.0000 mm (0.02 allowed), excess 0.0300 mm (0.05 allowed)"
+        );
     }
 
     #[test]

@@ -122,7 +122,7 @@ fn figures(page: &mut Page, report: &Report) {
     ];
     for (kind, figure, limit) in all {
         let name = page.paint(ink(kind), &format!("{:<6}", kind.name()));
-        let said = figure.map_or_else(|| nothing_of(kind).to_owned(), |f| against(f, limit, report));
+        let said = figure.map_or_else(|| nothing_of(kind, report).to_owned(), |f| against(f, limit, report));
         let indent = " ".repeat(10);
         for (at, line) in wrap(&said, page.width.saturating_sub(10)).iter().enumerate() {
             page.line(&if at == 0 { format!("  {name}  {line}") } else { format!("{indent}{line}") });
@@ -139,9 +139,9 @@ fn figures(page: &mut Page, report: &Report) {
 }
 
 /// Why there is no figure of a kind.
-const fn nothing_of(kind: Kind) -> &'static str {
-    match kind {
-        Kind::Cusp => "none: nowhere on the contour do two separate passes meet",
+const fn nothing_of(kind: Kind, report: &Report) -> &'static str {
+    match (kind, report.worst.excess) {
+        (Kind::Cusp, Some(_)) => "none: nowhere on the contour do two separate passes meet",
         _ => "not looked for",
     }
 }

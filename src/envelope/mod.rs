@@ -11,6 +11,7 @@ mod invariants;
 mod link;
 mod raw;
 mod region;
+mod run;
 mod sweep;
 
 pub(crate) use arrangement::{Arrangement, Fragment, Strand};

@@ -52,9 +52,10 @@
 //!     - radius * radius * ((FRAC_PI_2 / 2.0).tan() - FRAC_PI_2 / 2.0);
 //! assert!((region.area() - expected).abs() < 1e-9);
 //!
-//! // One loop: two caps, two outer sides, the arc round the corner, two inner sides.
+//! // One loop: two outer sides, the arc round the corner, two inner sides shorter by the radius, two caps.
 //! assert_eq!(region.loops.len(), 1);
-//! assert_eq!(region.pieces().count(), 7);
+//! let round = 40.0 + radius * FRAC_PI_2 + 2.0 * (20.0 - radius) + 2.0 * PI * radius;
+//! assert!((region.perimeter() - round).abs() < 1e-9);
 //! region.check_invariants(&family)?;
 //! # Ok::<(), Box<dyn std::error::Error>>(())
 //! ```

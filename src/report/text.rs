@@ -215,7 +215,9 @@ fn described(page: &mut Page, finding: &Finding, number: usize, report: &Report)
         page.paragraph(&indent, &format!("and {} blocks more", finding.blocks.len() - 3));
     }
     page.paragraph(&indent, &format!("cause: {} ({})", cause_words(finding.cause), finding.cause.name()));
-    page.paragraph(&indent, &format!("to do: {}", finding.remedy));
+    let before = report.findings.iter().zip(1..number).find(|(f, _)| f.remedy == finding.remedy);
+    let remedy = before.map_or_else(|| finding.remedy.clone(), |(_, n)| format!("as for finding {n}"));
+    page.paragraph(&indent, &format!("to do: {remedy}"));
 }
 
 /// A cause in a machinist's words.

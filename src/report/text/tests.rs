@@ -43,6 +43,16 @@ fn every_finding_says_place_block_cause_and_remedy() {
 }
 
 #[test]
+fn a_remedy_said_before_is_named_and_not_repeated() {
+    let mut report = sample::failing();
+    let first = report.findings[0].remedy.clone();
+    report.findings[1].remedy.clone_from(&first);
+    let text = text(&report);
+    assert_eq!(text.matches("to do: Take the loop between").count(), 1);
+    assert_eq!(text.matches("to do: as for finding 1\n").count(), 1);
+}
+
+#[test]
 fn what_is_undecided_is_not_counted_as_a_fault() {
     assert!(text(&sample::undecided()).contains("\n1 undecided\n"));
 }

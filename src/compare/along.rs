@@ -115,14 +115,14 @@ impl<'a> Tracer<'a> {
         if kept.len() > FEW {
             self.drop_repeated(course, interval, mark, &mut kept);
         }
-        let few = kept.len() <= FEW;
         let split = if interval.hi - interval.lo <= self.tie || interval.depth >= DEEPEST {
             self.settle_undecided(course, interval, mark, out);
             None
-        } else if few {
-            self.settle(course, interval, mark, &kept, out)
         } else {
-            Some(interval.middle())
+            // A long list may still agree throughout; else halving it comes before looking closer.
+            let few = kept.len() <= FEW;
+            let place = self.settle(course, interval, mark, &kept, out);
+            place.map(|at| if few { at } else { interval.middle() })
         };
         drop(kept);
         if let Some(at) = split {
@@ -317,4 +317,4 @@ fn crossing(a: &Law, b: &Law, lo: f64, hi: f64) -> Option<f64> {
 }
 
 #[cfg(test)]
-mod tests;
+pub(super) mod tests;

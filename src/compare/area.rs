@@ -28,6 +28,10 @@ const MOST_CELLS: usize = 1_000_000;
 /// Squares looked at to sharpen the greatest clearances of all spots together.
 const MOST_STEPS: usize = 400_000;
 
+/// After this many squares a spot that is certainly over the limit need be known to a hundredth only:
+/// a ridge between curved passes would take thousands of squares for each further digit.
+const ENOUGH_STEPS: usize = 2000;
+
 /// Most spots sharpened and reported, the greatest first.
 const MOST_SPOTS: usize = 1000;
 
@@ -60,6 +64,8 @@ pub(super) struct Floor<'a> {
 struct Bounded {
     cell: Cell,
     high: f64,
+    /// The clearance is no less anywhere in the square; minus infinity where not all of it is open.
+    low: f64,
     /// A corner of its open part, or its middle, with the greatest clearance tried.
     best: Option<(Point, f64)>,
 }
@@ -144,9 +150,12 @@ impl<'a> Floor<'a> {
         if value + reach <= floor {
             return None;
         }
-        let big = reach > self.moves.greatest_radius() + value.abs();
+        let low = if in_reach { f64::NEG_INFINITY } else { value - reach };
+        // A sharper bound costs a look at every move in reach: not for squares that are kept anyway or
+        // are still large.
+        let big = low > floor || reach > self.moves.greatest_radius();
         if big {
-            return Some(Bounded { cell, high: value + reach, best });
+            return Some(Bounded { cell, high: value + reach, low, best });
         }
         let polygon =
             if in_reach { cell.open_part(self.walls, self.allowance) } else { cell.corners().to_vec() };
@@ -160,7 +169,7 @@ impl<'a> Floor<'a> {
         // Beyond the square's neighbours a guess would belong to another spot.
         let near = (guess - cell.middle).hypot() <= 2.0 * reach;
         let guesses = near.then_some(guess).into_iter().chain(polygon);
-        Some(Bounded { cell, high, best: self.best_of(best, guesses) })
+        Some(Bounded { cell, high, low, best: self.best_of(best, guesses) })
     }
 
     /// The greatest clearance among `best` and those `guesses` that lie in an opening.
@@ -208,18 +217,19 @@ impl<'a> Floor<'a> {
 
     /// Squares that may hold a point above `limit`: above it throughout, or too small to divide.
     fn leaves(&self, limit: f64) -> Vec<Bounded> {
-        let smallest = (0.25 * limit).max(1e-4 * self.moves.greatest_radius());
+        let radius = self.moves.greatest_radius();
+        let smallest = (0.25 * limit).max(1e-4 * radius);
+        // A square on the edge of a spot need not be small: it belongs to it either way. Spots nearer to
+        // one another than this may become one.
+        let edge = smallest.max(radius / 32.0);
         let mut leaves = Vec::new();
         let mut pile: std::collections::VecDeque<Bounded> =
             self.bounded(self.root(), limit).into_iter().collect();
         let mut seen = 0;
         // Breadth first, so that running out of squares leaves squares of one size.
         while let Some(b) = pile.pop_front() {
-            let throughout = {
-                let inside = self.inside_by(b.cell.middle) >= self.allowance + b.cell.reach();
-                inside && self.clearance(b.cell.middle) - b.cell.reach() > limit
-            };
-            if throughout || b.cell.half <= smallest || seen >= MOST_CELLS {
+            let on_edge = b.cell.half <= edge && b.best.is_some_and(|(_, d)| d > limit);
+            if b.low > limit || on_edge || b.cell.half <= smallest || seen >= MOST_CELLS {
                 leaves.push(b);
                 continue;
             }
@@ -243,7 +253,9 @@ impl<'a> Floor<'a> {
         let mut ceiling = floor;
         while let Some(top) = heap.pop() {
             let size = best.map_or(floor, |b| b.1.max(floor));
-            if top.high - size <= within || steps >= most || top.cell.half <= 0.125 * self.tie {
+            let above = top.high - size;
+            let certain = steps >= ENOUGH_STEPS && above <= 0.01 * size && size - 2.0 * above > floor;
+            if above <= within || certain || steps >= most || top.cell.half <= 0.125 * self.tie {
                 ceiling = top.high;
                 // A square of which no point is known to be open still stands for its spot.
                 best = best.or_else(|| Some((top.cell.middle, self.clearance(top.cell.middle))));

@@ -3,7 +3,7 @@
 //! D is the least of v_k = |q - move k| - r_k, so for any weights w_k >= 0 that sum to one
 //! D <= sum w_k v_k. Each v_k lies below a convex function that agrees with it at the middle of the cell:
 //! itself for a line, a point, and the outside of a circle; its tangent plane for the inside of a circle
-//! (where it is concave); the distance from its nearest point for a part of an arc. A convex function
+//! (where it is concave); the distance from its nearest point near the ends of an arc. A convex function
 //! is greatest at a corner of the polygon, so the corners give a certain bound for all of it.
 //!
 //! With weights that cancel the slopes at the middle the bound is second order in the size of the cell:
@@ -19,25 +19,65 @@ use super::targets::Targets;
 /// Directions apart by which the moves that are looked at are chosen.
 const SECTORS: usize = 12;
 
-/// A convex upper bound of the distance from one move.
+/// An upper bound of the distance from one move.
 enum Cap<'a> {
-    /// From a line, or the outside of a circle, which are convex themselves.
-    Segment(&'a Segment),
-    /// From a circle about `center`, inside of it by the plane through `value` with `slope`.
-    Circle { center: Point, radius: f64, from: Point, value: f64, slope: Vec2 },
-    /// From a point of the move.
+    /// From a line, which is convex itself.
+    Line(&'a Segment),
+    /// From a circle that does not pass the cell: `sign` (|q - center| - radius), +1 outside of it.
+    Circle { center: Point, radius: f64, sign: f64 },
+    /// From a point of the move: a circle without radius.
     Point(Point),
 }
 
-impl Cap<'_> {
-    fn height(&self, q: Point) -> f64 {
-        match *self {
-            Cap::Segment(s) => s.distance(q),
-            Cap::Circle { center, radius, from, value, slope } => {
-                (value + slope.dot(q - from)).max((q - center).hypot() - radius)
+/// A weighted sum of caps, made convex. Circles about one centre are taken together first: between two
+/// passes round one centre their curvatures cancel.
+struct Sum<'a> {
+    lines: Vec<(f64, &'a Segment)>,
+    /// Factors of the distances from centres and points.
+    centers: Vec<(Point, f64)>,
+    constant: f64,
+    /// Where concave terms are replaced by their tangent plane.
+    middle: Point,
+}
+
+impl<'a> Sum<'a> {
+    fn new(caps: impl Iterator<Item = (f64, f64, Cap<'a>)>, middle: Point) -> Self {
+        let mut sum = Self { lines: Vec::new(), centers: Vec::new(), constant: 0.0, middle };
+        for (weight, less, cap) in caps {
+            sum.constant -= weight * less;
+            match cap {
+                Cap::Line(line) => sum.lines.push((weight, line)),
+                Cap::Point(p) => sum.add_center(p, weight),
+                Cap::Circle { center, radius, sign } => {
+                    sum.constant -= weight * sign * radius;
+                    sum.add_center(center, weight * sign);
+                }
             }
-            Cap::Point(p) => (q - p).hypot(),
         }
+        sum
+    }
+
+    fn add_center(&mut self, center: Point, factor: f64) {
+        match self.centers.iter_mut().find(|c| c.0 == center) {
+            Some(known) => known.1 += factor,
+            None => self.centers.push((center, factor)),
+        }
+    }
+
+    fn height(&self, q: Point) -> f64 {
+        let lines = self.lines.iter().map(|(w, line)| w * line.distance(q));
+        let centers = self.centers.iter().map(|&(center, factor)| {
+            let v = self.middle - center;
+            let distance = v.hypot();
+            if factor >= 0.0 {
+                factor * (q - center).hypot()
+            } else if distance > 0.0 {
+                factor * (distance + v.dot(q - self.middle) / distance)
+            } else {
+                0.0
+            }
+        });
+        self.constant + lines.sum::<f64>() + centers.sum::<f64>()
     }
 }
 
@@ -59,12 +99,9 @@ pub(super) fn ceiling(moves: &Targets, cell: &Cell, polygon: &[Point], value: f6
     let Some(weights) = weights(&near, reach) else {
         return (plain, cell.middle);
     };
-    let caps: Vec<(f64, f64, Cap)> = weights
-        .iter()
-        .map(|&(n, w)| (w, moves.radius(n.k), cap(moves.segment(n.k), cell, polygon)))
-        .collect();
-    let height = |q: &Point| caps.iter().map(|(w, r, c)| w * (c.height(*q) - r)).sum::<f64>();
-    let high = polygon.iter().map(height).fold(f64::NEG_INFINITY, f64::max);
+    let caps = weights.iter().map(|&(n, w)| (w, moves.radius(n.k), cap(moves.segment(n.k), cell, polygon)));
+    let sum = Sum::new(caps, cell.middle);
+    let high = polygon.iter().map(|&q| sum.height(q)).fold(f64::NEG_INFINITY, f64::max);
     ((high + moves.residual()).min(plain), cell.middle + balance(&weights))
 }
 
@@ -154,21 +191,18 @@ fn weights(near: &[Near], reach: f64) -> Option<Vec<(Near, f64)>> {
 fn cap<'a>(segment: &'a Segment, cell: &Cell, polygon: &[Point]) -> Cap<'a> {
     let middle = cell.middle;
     let Segment::Arc(arc) = segment else {
-        return Cap::Segment(segment);
+        return Cap::Line(segment);
     };
     let v = middle - arc.center();
     let distance = v.hypot();
     if distance <= 0.0 || !faces_all(arc, middle, polygon) {
         return Cap::Point(segment.nearest(middle).at);
     }
-    // Inside the circle the distance falls towards it: the plane's slope is against the radius.
-    Cap::Circle {
-        center: arc.center(),
-        radius: arc.radius(),
-        from: middle,
-        value: arc.radius() - distance,
-        slope: v / -distance,
+    let sign = if distance > arc.radius() { 1.0 } else { -1.0 };
+    if (distance - arc.radius()).abs() <= cell.reach() || distance <= cell.reach() {
+        return Cap::Point(segment.nearest(middle).at);
     }
+    Cap::Circle { center: arc.center(), radius: arc.radius(), sign }
 }
 
 /// Does one half of the arc, which spans no more than half a turn, face the middle and every corner?
@@ -182,3 +216,6 @@ fn faces_all(arc: &Arc, middle: Point, polygon: &[Point]) -> bool {
     }
     faces(&arc.part(0.0, 0.5)) || faces(&arc.part(0.5, 1.0)) || faces(&arc.part(0.25, 0.75))
 }
+
+#[cfg(test)]
+mod tests;

@@ -149,3 +149,6 @@ fn cut(polygon: &mut Vec<Point>, foot: Point, normal: Vec2, least: f64) {
     }
     *polygon = kept;
 }
+
+#[cfg(test)]
+mod tests;

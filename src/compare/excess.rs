@@ -79,9 +79,8 @@ impl Judge {
         }
         // Without any peak the pieces were too short to tell one: then the greatest counts.
         let plain = scan.greatest_plain.or_else(|| scan.greatest_crest.is_none().then_some(greatest));
-        if let Some(peak) = plain {
-            self.raise(&mut out.worst_excess, peak.size);
-        }
+        // A path with crests alone has been looked at: nothing but them stands on it.
+        self.raise(&mut out.worst_excess, plain.map_or(0.0, |peak| peak.size));
         if let Some(peak) = scan.greatest_crest {
             self.raise(&mut out.worst_cusp, peak.size);
         }

@@ -268,6 +268,11 @@ impl Wave {
     }
 }
 
+/// Size of an angle up to whole turns.
+fn turned(a: f64) -> f64 {
+    (a - (a / TAU).round() * TAU).abs()
+}
+
 /// Does the angle running from `a` to `b` pass a whole turn (cosine 1), and a half (cosine -1)?
 fn passes_turn(a: f64, b: f64) -> (bool, bool) {
     let (low, high) = if a < b { (a, b) } else { (b, a) };
@@ -381,7 +386,13 @@ impl Law {
     pub(super) fn lead_over(&self, other: &Self, lo: f64, hi: f64) -> f64 {
         let (a, b) = (self.value(lo) - other.value(lo), self.value(hi) - other.value(hi));
         let (mine, theirs) = (self.slopes(lo, hi), other.slopes(lo, hi));
-        let (p, q) = (mine.0 - theirs.1, mine.1 - theirs.0);
+        let (mut p, mut q) = (mine.0 - theirs.1, mine.1 - theirs.0);
+        if let Some(bend) = self.bend_unlike(other, lo, hi) {
+            // Laws that nearly agree bend alike: their slopes differ as they do in the middle.
+            let middle = self.slope(0.5 * (lo + hi)) - other.slope(0.5 * (lo + hi));
+            let play = 0.5 * bend * (hi - lo);
+            (p, q) = (p.max(middle - play), q.min(middle + play));
+        }
         if p >= 0.0 || q <= 0.0 {
             return a.min(b);
         }
@@ -389,10 +400,49 @@ impl Law {
         meet.min(a).min(b).max(-self.unlike(other))
     }
 
+    /// +1 where the running point stays outside of the circle over [lo, hi], -1 inside.
+    fn branch(&self, lo: f64, hi: f64) -> Option<f64> {
+        let (a, b) = self.wave.range(lo, hi);
+        if a >= self.circle {
+            Some(1.0)
+        } else if b <= self.circle {
+            Some(-1.0)
+        } else {
+            None
+        }
+    }
+
+    /// A bound over [lo, hi] of how much the second derivatives of two laws of one form differ.
+    ///
+    /// The distance g from a point has the second derivative (1 - (u.T)^2) / g + k u.N, with u the
+    /// direction from the point and k the curvature of the course; shifting the point by d changes
+    /// that by no more than d (3 / g^2 + k / g) for the least g on the way.
+    fn bend_unlike(&self, other: &Self, lo: f64, hi: f64) -> Option<f64> {
+        let (mine, theirs) = (self.branch(lo, hi)?, other.branch(lo, hi)?);
+        let same = (mine < 0.0) == (theirs < 0.0);
+        let of_points = |shift: f64, curvature: f64| {
+            let g = self.wave.range(lo, hi).0.min(other.wave.range(lo, hi).0) - shift;
+            (same && g > 0.0).then(|| shift * (3.0 / (g * g) + curvature / g))
+        };
+        match (self.wave, other.wave) {
+            (Wave::Linear { .. }, Wave::Linear { .. }) => Some(0.0),
+            (Wave::Hypot { foot, height }, Wave::Hypot { foot: f, height: h }) => {
+                of_points((foot - f).abs() + (height - h).abs(), 0.0)
+            }
+            (Wave::Polar { off, psi, rate, .. }, Wave::Polar { off: o, psi: p, .. }) => {
+                of_points((off - o).abs() + off.min(o) * turned(psi - p), rate.abs())
+            }
+            (Wave::Cosine { psi, rate, .. }, Wave::Cosine { psi: p, .. }) => {
+                let flip = if same { 0.0 } else { PI };
+                Some(rate.abs() * turned(psi - p - flip))
+            }
+            _ => None,
+        }
+    }
+
     /// A bound of |self - other| for laws of one form, by the difference of their terms: the same point
     /// (the joint of two moves), a retraced line, a concentric arc. Infinite for different forms.
     fn unlike(&self, other: &Self) -> f64 {
-        let turned = |a: f64| (a - (a / TAU).round() * TAU).abs();
         let rest = (self.circle - other.circle).abs() + (self.less - other.less).abs();
         rest + match (self.wave, other.wave) {
             (Wave::Linear { a, b }, Wave::Linear { a: c, b: d }) if b == 0.0 && d == 0.0 => (a - c).abs(),

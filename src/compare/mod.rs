@@ -245,8 +245,14 @@ pub fn compare(part: &Part, cutting: &DiscFamily, rapids: &DiscFamily, request: 
     let passes = Passes::new(cutting);
     out.folds = folds::folds(cutting, &walls, request.gouge + bound, &request.tolerances);
     let tracer = Tracer::new(&moves, &request.tolerances);
-    let mut scanner =
-        Scanner { walls: &walls, moves: &moves, passes: &passes, tracer, limits: judge.clearances() };
+    let mut scanner = Scanner {
+        walls: &walls,
+        moves: &moves,
+        passes: &passes,
+        tracer,
+        limits: judge.clearances(),
+        crest_from: part.allowance + bound,
+    };
     excess::contour_not_reached(&part.contour, &mut scanner, &judge, &mut out);
     if request.clear == Clear::Area {
         area_not_reached(part, (&walls, &moves), request, bound, &mut out);

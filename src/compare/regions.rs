@@ -225,7 +225,7 @@ impl Sight<'_> {
             .map(|(f, &a)| Choice { fragment: *f, kept: self.bounds(f, a, combination), doubt: 0.0 })
             .collect();
         let mut rings: Vec<Path> = Vec::new();
-        for ring in loops(&choices, |f| self.segment(f)) {
+        for ring in loops(&choices, |f, t| self.segment(f).tangent_at(t)) {
             let pieces: Vec<Segment> = ring
                 .iter()
                 .filter_map(|&i| choices.get(i as usize))

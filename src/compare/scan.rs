@@ -69,6 +69,8 @@ pub(super) struct Scanner<'a> {
     pub(super) passes: &'a Passes,
     pub(super) tracer: Tracer<'a>,
     pub(super) limits: [f64; 2],
+    /// Clearance above which something stands at all.
+    pub(super) crest_from: f64,
 }
 
 /// A piece with the course it lies on, for looking back from the next one.
@@ -211,7 +213,8 @@ impl Scanner<'_> {
         }
         let mut peak = after.peak(start);
         let sharp = rise > LEVEL && fall < -LEVEL;
-        if sharp && self.is_smooth(before, after) {
+        // Where both passes reach the contour nothing stands.
+        if sharp && peak.size > self.crest_from && self.is_smooth(before, after) {
             peak.crest = self.crest(before, after, peak.at);
         }
         scan.note(peak, self.lowest_limit());

@@ -344,3 +344,154 @@ fn allowance_is_taken_off_the_excess_and_not_added_to_the_gouge() {
     let found = judged(&part, &path, 1e-6);
     assert!(found.gouges.is_empty() && found.excesses.is_empty());
 }
+
+/// A plate with a rounded corner, a notch and a hole.
+fn plate() -> Part {
+    let arc = Arc::from_center(p(50.0, 10.0), p(50.0, 0.0), p(60.0, 10.0), Turn::Left, 1e-9).unwrap();
+    let outer = vec![
+        Segment::line(p(0.0, 0.0), p(50.0, 0.0)),
+        Segment::Arc(arc),
+        Segment::line(p(60.0, 10.0), p(60.0, 40.0)),
+        Segment::line(p(60.0, 40.0), p(35.0, 40.0)),
+        Segment::line(p(35.0, 40.0), p(30.0, 25.0)),
+        Segment::line(p(30.0, 25.0), p(25.0, 40.0)),
+        Segment::line(p(25.0, 40.0), p(0.0, 40.0)),
+        Segment::line(p(0.0, 40.0), p(0.0, 0.0)),
+    ];
+    part(vec![Path::new(outer, true).unwrap(), circle(p(15.0, 15.0), 8.0, Turn::Left)], Keep::Inside)
+}
+
+/// Random chains of lines and arcs over and round the plate.
+fn random_cuts(rng: &mut fastrand::Rng, radius: f64) -> DiscFamily {
+    let mut segments = Vec::new();
+    for _ in 0..1 + rng.usize(..3) {
+        let mut at = p(rng.f64() * 80.0 - 10.0, rng.f64() * 60.0 - 10.0);
+        for _ in 0..1 + rng.usize(..6) {
+            let to = at + Vec2::new(rng.f64() * 30.0 - 15.0, rng.f64() * 30.0 - 15.0);
+            let bulge = rng.f64() * 3.0 - 1.5;
+            segments.push(match rng.bool() {
+                true => Segment::line(at, to),
+                false => Arc::from_bulge(at, to, bulge).map_or(Segment::line(at, to), Segment::Arc),
+            });
+            at = to;
+        }
+    }
+    let moves = (0u32..).zip(segments).map(|(i, segment)| DiscMove { segment, radius, source: MoveIndex(i) });
+    DiscFamily { moves: moves.collect() }
+}
+
+#[test]
+fn gouges_of_random_cuts_hold_every_sample_of_the_definition() {
+    let part = plate();
+    let mut rng = fastrand::Rng::with_seed(77);
+    let limit = 0.05;
+    for case in 0..150 {
+        let cuts = random_cuts(&mut rng, 2.0);
+        let found = judged(&part, &cuts, limit);
+        let bound = figure_bound(&part, &cuts, &request(limit));
+        let mut greatest = 0.0f64;
+        let mut spacing = 0.0f64;
+        for (i, m) in cuts.moves.iter().enumerate() {
+            for k in 0..=400 {
+                let c = m.segment.point_at(f64::from(k) / 400.0);
+                let distance =
+                    part.contour.segments().map(|(_, s)| s.distance(c)).fold(f64::INFINITY, f64::min);
+                let depth = m.radius + if part.contains(c) { distance } else { -distance };
+                greatest = greatest.max(depth);
+                if depth > limit + 1e-6 {
+                    let told = found
+                        .gouges
+                        .iter()
+                        .any(|g| g.moves.0 <= i && i <= g.moves.1 && depth <= g.depth.size + bound);
+                    assert!(told, "case {case}: {depth} at {c} of move {i} is in no gouge");
+                }
+            }
+            spacing = spacing.max(m.segment.length() / 400.0);
+        }
+        let worst = found.worst_gouge.unwrap().size;
+        assert!(greatest <= worst + bound && worst <= greatest + spacing, "case {case}: {greatest} {worst}");
+        for g in &found.gouges {
+            let distance = (g.center - g.at).hypot();
+            let reach = 2.0 + if part.contains(g.center) { distance } else { -distance };
+            assert!((reach - g.depth.size).abs() <= 2.0 * bound, "case {case}: {g:?} reaches {reach}");
+            assert!(g.stretch.from <= g.stretch.to);
+        }
+    }
+}
+
+#[test]
+fn excesses_of_random_cuts_hold_every_sample_of_the_definition() {
+    let part = plate();
+    let mut rng = fastrand::Rng::with_seed(78);
+    let limit = 0.05;
+    for case in 0..60 {
+        let cuts = random_cuts(&mut rng, 6.0);
+        let found = judged(&part, &cuts, limit);
+        let bound = figure_bound(&part, &cuts, &request(limit));
+        for (number, path) in part.contour.paths().iter().enumerate() {
+            let length = path.length();
+            let mut start = 0.0;
+            for s in path.segments() {
+                for k in 0..=200 {
+                    let q = s.point_at(f64::from(k) / 200.0);
+                    let way = start + s.length() * f64::from(k) / 200.0;
+                    let nearest = cuts.moves.iter().map(|m| m.segment.distance(q) - m.radius);
+                    let d = nearest.fold(f64::INFINITY, f64::min);
+                    if d <= limit + 1e-6 {
+                        continue;
+                    }
+                    let told = found.excesses.iter().any(|e| {
+                        let stretch = e.stretch.unwrap();
+                        let holds = |w: f64| stretch.from <= w + 1e-9 && w <= stretch.to + 1e-9;
+                        stretch.path == number && (holds(way) || holds(way + length))
+                    });
+                    assert!(told, "case {case}: {d} at {q}, {way} along path {number}, is in no excess");
+                    let worst =
+                        found.worst_excess.unwrap().size.max(found.worst_cusp.map_or(0.0, |f| f.size));
+                    assert!(d <= worst + bound, "case {case}");
+                }
+                start += s.length();
+            }
+        }
+        for e in &found.excesses {
+            let nearest = cuts.moves[e.nearest_move].segment.distance(e.at) - 6.0;
+            assert!((nearest - e.height.size).abs() <= 2.0 * bound, "case {case}: {e:?} {nearest}");
+        }
+    }
+}
+
+#[test]
+fn figures_are_the_same_for_moved_mirrored_and_reversed_inputs() {
+    use crate::geometry::Affine;
+    let base = plate();
+    let mut rng = fastrand::Rng::with_seed(79);
+    let maps = [Affine::translate((1e6, -1e6)), Affine::rotate(0.7), Affine::FLIP_Y, Affine::scale(0.01)];
+    for case in 0..40 {
+        let cuts = random_cuts(&mut rng, 4.0);
+        let plain = judged(&base, &cuts, 0.05);
+        for (number, map) in maps.iter().enumerate() {
+            let scale = map.determinant().abs().sqrt();
+            let contour = base.contour.mapped(*map).unwrap();
+            let origins = base.origins.clone();
+            let part = Part::new(contour, Keep::Inside, 0.0, origins).unwrap();
+            let moves = cuts.moves.iter().rev().map(|m| DiscMove {
+                segment: m.segment.mapped(*map).unwrap().reversed(),
+                radius: m.radius * scale,
+                ..*m
+            });
+            let extent = if number == 0 { 1e6 } else { 100.0 };
+            let request = Request { tolerances: Tolerances::for_extent(extent), ..request(0.05 * scale) };
+            let found =
+                compare(&part, &DiscFamily { moves: moves.collect() }, &DiscFamily::default(), &request);
+            let (a, b) = (plain.worst_gouge.unwrap(), found.worst_gouge.unwrap());
+            let allowed = scale * a.bound + b.bound + 1e-9;
+            assert!((a.size * scale - b.size).abs() <= allowed, "case {case} map {number}: {a:?} {b:?}");
+            assert_eq!(plain.gouges.len(), found.gouges.len(), "case {case} map {number}");
+            let greatest = |c: &Comparison| {
+                c.worst_excess.map_or(0.0, |f| f.size).max(c.worst_cusp.map_or(0.0, |f| f.size))
+            };
+            let (a, b) = (greatest(&plain) * scale, greatest(&found));
+            assert!((a - b).abs() <= allowed, "case {case} map {number}: {a} {b}");
+        }
+    }
+}

@@ -31,6 +31,8 @@ pub(crate) struct Arrangement {
     pub fragments: Vec<Fragment>,
     /// Place of each node.
     pub places: Vec<Point>,
+    /// For each number of a node the number under which it goes.
+    one: Vec<u32>,
 }
 
 /// A node on a strand.
@@ -42,6 +44,11 @@ struct Mark {
 }
 
 impl Arrangement {
+    /// The number under which node `n` goes: the lowest of those that are one with it.
+    pub fn one(&self, n: u32) -> u32 {
+        self.one.get(n as usize).copied().unwrap_or(n)
+    }
+
     /// Cuts `strands` at every meeting. `places` are the nodes that they share already.
     pub fn new(strands: &[Strand], places: Vec<Point>, coincidence: f64) -> Self {
         Self::between(strands, places, coincidence, |_, _| true)
@@ -79,7 +86,7 @@ impl Arrangement {
             }
             fragments.push(Fragment { strand: a.strand, t: [a.t, b.t], nodes: [a.node, b.node] });
         }
-        Self { fragments, places }
+        Self { fragments, places, one }
     }
 }
 

@@ -9,7 +9,7 @@
 use std::cmp::Reverse;
 use std::collections::BinaryHeap;
 
-use crate::geometry::{Point, Segment, Vec2};
+use crate::geometry::{Point, Vec2};
 
 use super::arrangement::Fragment;
 
@@ -170,11 +170,12 @@ impl Ord for Cost {
     }
 }
 
-/// Closed loops of the kept fragments, each passing no node twice: positions in `choices`.
+/// Closed loops of the kept fragments, each passing no node twice: positions in `choices`. `tangent`
+/// gives the direction of a fragment at its start (0) and end (1).
 ///
 /// Where a boundary touches itself in a node the way that turns most to the left is taken, towards
 /// the material: lobes that touch stay loops of their own.
-pub(crate) fn loops(choices: &[Choice], segment_of: impl Fn(&Fragment) -> Segment) -> Vec<Vec<u32>> {
+pub(crate) fn loops(choices: &[Choice], tangent: impl Fn(&Fragment, f64) -> Vec2) -> Vec<Vec<u32>> {
     let mut out: Vec<(u32, u32)> =
         (0u32..).zip(choices).filter(|(_, c)| c.kept).map(|(i, c)| (c.fragment.nodes[0], i)).collect();
     out.sort_unstable();
@@ -203,7 +204,7 @@ pub(crate) fn loops(choices: &[Choice], segment_of: impl Fn(&Fragment) -> Segmen
                 }
                 found.push(ring);
             }
-            next = onward(choices, &out, &used, &segment_of, i, to);
+            next = onward(choices, &out, &used, &tangent, i, to);
             if trail.is_empty() {
                 break;
             }
@@ -218,7 +219,7 @@ fn onward(
     choices: &[Choice],
     out: &[(u32, u32)],
     used: &[bool],
-    segment_of: &impl Fn(&Fragment) -> Segment,
+    tangent: &impl Fn(&Fragment, f64) -> Vec2,
     i: u32,
     node: u32,
 ) -> Option<u32> {
@@ -231,9 +232,9 @@ fn onward(
         .filter(|&k| used.get(k as usize).is_some_and(|u| !u));
     let first = leaving.next()?;
     let Some(second) = leaving.next() else { return Some(first) };
-    let ahead = choices.get(i as usize).map_or(Vec2::ZERO, |c| segment_of(&c.fragment).tangent_at(1.0));
+    let ahead = choices.get(i as usize).map_or(Vec2::ZERO, |c| tangent(&c.fragment, 1.0));
     let turn = |k: u32| {
-        let d = choices.get(k as usize).map_or(Vec2::ZERO, |c| segment_of(&c.fragment).tangent_at(0.0));
+        let d = choices.get(k as usize).map_or(Vec2::ZERO, |c| tangent(&c.fragment, 0.0));
         ahead.cross(d).atan2(ahead.dot(d))
     };
     let mut best = first;

@@ -7,10 +7,14 @@
 mod arrangement;
 mod clearance;
 mod cover;
+mod fate;
 mod invariants;
 mod link;
 mod raw;
 mod region;
+mod run;
+mod seat;
+mod strands;
 mod sweep;
 
 pub(crate) use arrangement::{Arrangement, Fragment, Strand};

@@ -15,8 +15,10 @@
 
 use std::f64::consts::PI;
 
-use crate::geometry::{Arc, Offset, Point, Segment, Vec2};
+use crate::geometry::{Arc, Line, Offset, Point, Segment, Vec2};
 use crate::view::DiscFamily;
+
+use super::run::Run;
 
 /// A piece of raw edge.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -57,7 +59,27 @@ pub(crate) struct RawEdge {
     pub pieces: Vec<Raw>,
     /// Place of each joint.
     pub joints: Vec<Point>,
+    /// The closed curves, one after the other.
+    pub rings: Vec<Ring>,
 }
+
+/// One closed curve of raw edge.
+#[derive(Clone, Debug)]
+pub(crate) struct Ring {
+    /// Its pieces.
+    pub pieces: std::ops::Range<usize>,
+    /// The moves round which it runs, by position in the family.
+    pub moves: std::ops::Range<u32>,
+    /// Is it the true edge of the sweep of those moves, so that only other moves can cover it?
+    pub true_edge: bool,
+}
+
+/// Fewest lines that are worth a run of their own.
+const SHORTEST_RUN: usize = 1;
+
+/// Cosine of the widest angle between two moves of a run: 150 degrees, so that each advances along the
+/// run by at least a quarter of its length.
+const WIDEST: f64 = -0.866;
 
 impl RawEdge {
     /// Raw edge of `family`. Pieces shorter than `coincidence` are left out: their ends become one.
@@ -86,11 +108,64 @@ impl RawEdge {
         edge
     }
 
-    /// Adds the closed curve round one chain (two of them round a closed chain).
+    /// Adds the raw edge of one chain: monotone runs of lines by their true edge, the rest piece by piece.
     fn chain(&mut self, chain: &[(u32, Segment)], radius: f64, coincidence: f64) {
+        let mut rest = chain;
+        let mut plain = 0;
+        while plain < rest.len() {
+            let ahead = rest.get(plain..).unwrap_or_default();
+            let (length, direction) = run_length(ahead);
+            if length < SHORTEST_RUN {
+                plain += 1;
+                continue;
+            }
+            let (before, from) = rest.split_at(plain);
+            let (run, after) = from.split_at(length);
+            self.plain(before, radius, coincidence);
+            self.run(run, direction, radius, coincidence);
+            (rest, plain) = (after, 0);
+        }
+        self.plain(rest, radius, coincidence);
+    }
+
+    /// Adds the true edge of a monotone run.
+    fn run(&mut self, chain: &[(u32, Segment)], ahead: Vec2, radius: f64, coincidence: f64) {
+        let lines: Vec<Line> = chain.iter().map(|(_, s)| Line::new(s.start(), s.end())).collect();
+        let mut boundary = Vec::new();
+        Run { lines: &lines, ahead, radius }.boundary(coincidence, &mut boundary);
+        let first = self.joints.len() as u32;
+        let count = boundary.len() as u32;
+        let start = self.pieces.len();
+        for (k, p) in (0u32..).zip(&boundary) {
+            self.joints.push(p.segment.start());
+            let end = if k + 1 == count { first } else { first + k + 1 };
+            let source = chain.get(p.line as usize).map_or(0, |c| c.0);
+            self.pieces.push(Raw {
+                segment: p.segment,
+                source,
+                joints: [first + k, end],
+                outward: Outward::Right,
+            });
+        }
+        self.ring(start, chain, true);
+    }
+
+    /// Notes that the pieces since `start` are one closed curve round `chain`.
+    fn ring(&mut self, start: usize, chain: &[(u32, Segment)], true_edge: bool) {
+        let (Some(first), Some(last)) = (chain.first(), chain.last()) else { return };
+        let pieces = start..self.pieces.len();
+        if !pieces.is_empty() {
+            self.rings.push(Ring { pieces, moves: first.0..last.0 + 1, true_edge });
+        }
+    }
+
+    /// Adds the closed curve round one chain (two of them round a closed chain), piece by piece.
+    fn plain(&mut self, chain: &[(u32, Segment)], radius: f64, coincidence: f64) {
         let (Some(&(first, s)), Some(&(last, e))) = (chain.first(), chain.last()) else { return };
+        let start = self.pieces.len();
         if chain.len() == 1 && is_point(&s, coincidence) {
             self.disc(first, s.start(), radius);
+            self.ring(start, chain, true);
             return;
         }
         let closed = (s.start() - e.end()).hypot() <= coincidence;
@@ -107,6 +182,7 @@ impl RawEdge {
         }
         if closed {
             pen.close();
+            self.ring(start, chain, false);
             pen = Pen::new(self, radius, coincidence);
         }
         for (k, &(i, m)) in chain.iter().enumerate().rev() {
@@ -118,7 +194,9 @@ impl RawEdge {
                 None => pen.cap(first, s.start(), -s.tangent_at(0.0)),
             }
         }
+        let start = pen.first_piece;
         pen.close();
+        self.ring(start, chain, false);
     }
 
     /// A disc that stands still.
@@ -131,6 +209,36 @@ impl RawEdge {
             self.pieces.push(Raw { segment, source, joints, outward: Outward::Right });
         }
     }
+}
+
+/// How many moves from the start of `chain` make a monotone run of lines, and along which direction.
+fn run_length(chain: &[(u32, Segment)]) -> (usize, Vec2) {
+    let mut span: Option<(Vec2, Vec2)> = None;
+    let mut count = 0;
+    for (_, s) in chain {
+        let Segment::Line(l) = s else { break };
+        let d = l.tangent();
+        // The outermost directions so far, clockwise and counter-clockwise. A direction beyond both
+        // points backwards.
+        let (mut low, mut high) = span.unwrap_or((d, d));
+        let (beyond_low, beyond_high) = (low.cross(d) < 0.0, high.cross(d) > 0.0);
+        if d == Vec2::ZERO || (beyond_low && beyond_high) || (low + high).dot(d) <= 0.0 {
+            break;
+        }
+        if beyond_low {
+            low = d;
+        }
+        if beyond_high {
+            high = d;
+        }
+        if low.dot(high) < WIDEST {
+            break;
+        }
+        span = Some((low, high));
+        count += 1;
+    }
+    let ahead = span.map_or(Vec2::ZERO, |(a, b)| (a + b).normalize());
+    (count, ahead)
 }
 
 /// Does the whole segment count as one point?

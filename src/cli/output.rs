@@ -117,7 +117,7 @@ fn wrapped(text: &str, width: usize) -> String {
                 rest.char_indices().nth(width.saturating_sub(indent.len())).map_or(rest.len(), |c| c.0);
             let first_word = rest.len() - rest.trim_start().len();
             let blank = |(at, c): &(usize, char)| *c == ' ' && *at <= most && *at > first_word;
-            let Some((at, _)) = rest.char_indices().filter(blank).last() else { break };
+            let Some((at, _)) = rest.char_indices().rfind(blank) else { break };
             let (head, tail) = rest.split_at(at);
             lines.push(format!("{indent}{head}"));
             (rest, indent) = (tail.trim_start(), "    ");

@@ -358,7 +358,7 @@ fn a_drawing_that_lies_elsewhere_is_not_judged_when_unvisited_loops_are_left_out
     let args =
         ["--part", "square.csv", "--program", "round.nc", "-d", "4", "--units", "mm", "--keep", "inside"];
     let away = [&args[..], &["--shift", "500,0", "--only-visited"]].concat();
-    shop.refuses(&away, &["does not lie where the program cuts", "--shift -500.000,-4.000"]);
+    shop.refuses(&away, &["does not lie where the program cuts", "X-500.000 Y-4.000"]);
     let (status, ..) = shop.run(&[&["check"], &args[..], &["--shift", "500,0"]].concat());
     assert_eq!(status, Some(1), "asked for in full, the loop is missing");
 }

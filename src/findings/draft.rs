@@ -44,6 +44,8 @@ pub(super) enum Diagnosis {
     WrongWay { left: bool },
     /// A pass, or an end of one, too near to the wall or too far from it.
     OffPath,
+    /// The path turns in a sharp corner where an arc of this radius would follow the fillet of the wall.
+    SharpTurn { radius: f64 },
     /// A cut begins and ends without meeting its own beginning.
     Gap { first: usize, last: usize },
     /// Geometry names no cause.
@@ -65,7 +67,7 @@ impl Diagnosis {
             Self::EntryTooDeep { .. } | Self::CutTooShort { .. } | Self::Gap { .. } => Cause::EntryOrExit,
             Self::Rapid => Cause::RapidThroughPart,
             Self::WrongWay { .. } => Cause::ArcWrongWay,
-            Self::OffPath => Cause::PathOffContour,
+            Self::OffPath | Self::SharpTurn { .. } => Cause::PathOffContour,
             Self::Unknown => Cause::Unknown,
         }
     }

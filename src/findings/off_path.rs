@@ -7,6 +7,8 @@ use std::f64::consts::TAU;
 use super::diagnose::{ALONGSIDE, Scene};
 use super::draft::{Diagnosis, Draft};
 use super::moves::Chords;
+use super::number::{length_text, point_text};
+use super::wording::Words;
 use crate::compare::Gouge;
 use crate::geometry::{Arc, Point, Segment, Vec2};
 
@@ -83,7 +85,21 @@ impl Scene<'_> {
             let s = self.cuts.segment(worst)?;
             ((s.start() - center).hypot().min((s.end() - center).hypot()) <= reach).then_some(worst)
         };
-        along.or_else(ends).map(|i| (Diagnosis::OffPath, i))
+        let fillet = match wall {
+            Segment::Arc(a) if a.sweep() < 0.0 => a.radius() - draft.radius - self.facts.part.allowance,
+            _ => 0.0,
+        };
+        let i = along.or_else(ends)?;
+        let turns = fillet > 1e-3 * draft.radius && self.turns_sharply(center);
+        Some((if turns { Diagnosis::SharpTurn { radius: fillet } } else { Diagnosis::OffPath }, i))
+    }
+
+    /// Do two moves that follow one another make a corner at this point?
+    fn turns_sharply(&self, corner: Point) -> bool {
+        let pairs = self.cuts.moves.iter().zip(self.cuts.moves.iter().skip(1));
+        pairs.map(|(a, b)| (a.segment, b.segment)).any(|(a, b)| {
+            a.end() == corner && b.start() == corner && a.tangent_at(1.0).dot(b.tangent_at(0.0)) < ALONGSIDE
+        })
     }
 
     /// Does move `i` run along the wall at its parameter `t`?
@@ -106,6 +122,23 @@ impl Scene<'_> {
         let places = |s: &Segment| [s.start(), s.point_at(0.5), s.end()];
         let mut all = self.cuts.moves.iter().flat_map(|m| places(&m.segment));
         !self.cuts.moves.is_empty() && all.all(|p| self.facts.part.contains(p))
+    }
+}
+
+impl Words<'_> {
+    pub(super) fn why_sharp(&self, radius: f64, d: &Draft) -> String {
+        format!(
+            ": there the path turns in a sharp corner, but the contour in a fillet of radius {}.",
+            length_text(radius + d.radius + self.allowance, self.unit)
+        )
+    }
+
+    pub(super) fn remedy_sharp(&self, radius: f64, d: &Draft) -> String {
+        let at = point_text(d.center.unwrap_or(d.at), self.unit);
+        format!(
+            "Round the corner of the path at {at} with an arc of {} radius, tangent to the moves before and after it.",
+            length_text(radius, self.unit)
+        )
     }
 }
 

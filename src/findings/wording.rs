@@ -23,7 +23,7 @@ const SENSIBLE: f64 = 0.2;
 pub(super) struct Words<'a> {
     pub(super) scene: &'a Scene<'a>,
     pub(super) unit: Unit,
-    allowance: f64,
+    pub(super) allowance: f64,
 }
 
 impl<'a> Words<'a> {
@@ -154,6 +154,7 @@ impl<'a> Words<'a> {
                 self.scene.cuts.lines_text(*first, *first),
                 self.scene.cuts.lines_text(*last, *last)
             ),
+            Diagnosis::SharpTurn { radius } => self.why_sharp(*radius, d),
             Diagnosis::OffPath if d.kind == Kind::Gouge => {
                 format!(": the path of {} runs too near to it.", self.worst_line(d))
             }
@@ -209,6 +210,7 @@ impl<'a> Words<'a> {
                 let (right, wrong) = if *left { ("G2", "G3") } else { ("G3", "G2") };
                 format!("Write {right} in place of {wrong} in {}.", self.worst_line(d))
             }
+            Diagnosis::SharpTurn { radius } => self.remedy_sharp(*radius, d),
             Diagnosis::EntryTooDeep { .. } | Diagnosis::OffPath | Diagnosis::Unknown
                 if d.kind == Kind::Gouge =>
             {

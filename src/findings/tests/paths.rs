@@ -152,3 +152,24 @@ fn a_rapid_move_alone_is_not_turned_into_a_cut() {
     case.command(Segment::line(p(9.0, 5.0), p(20.0, 5.0)), 5.0, MoveKind::Rapid);
     assert!(case.judge().findings.is_empty());
 }
+
+#[test]
+fn a_sharp_corner_of_the_path_in_a_fillet_of_6_asks_a_cutter_of_radius_5_for_an_arc_of_1() {
+    // Material right of the walls: the fillet turns left seen so, right once material lies on the left.
+    let wall = vec![
+        Segment::line(p(0.0, 0.0), p(94.0, 0.0)),
+        arc(p(94.0, 6.0), p(94.0, 0.0), p(100.0, 6.0), Turn::Left),
+        Segment::line(p(100.0, 6.0), p(100.0, 60.0)),
+    ];
+    let cuts = lines(&[p(10.0, 5.0), p(95.0, 5.0), p(95.0, 50.0), p(50.0, 50.0)]);
+    let mut case = Case::new(part(vec![Path::new(wall, false).unwrap()], Keep::Right, 0.0), &cuts, 5.0);
+    // The corner (95, 5) lies sqrt 2 from the fillet's center, that is 6 - sqrt 2 from the fillet.
+    let depth = 5.0 - (6.0 - 2.0f64.sqrt());
+    let mut bite = gouge(depth, p(95.0, 5.0), p(98.243, 1.757), 0, stretch(0, 95.0, 103.0));
+    bite.moves = (0, 1);
+    case.comparison.gouges = vec![bite];
+    let f = case.only();
+    assert_eq!(f.cause, Cause::PathOffContour);
+    holds(&f.message, &["sharp corner", "fillet of radius 6.000 mm"]);
+    holds(&f.remedy, &["at X95.000 Y5.000 with an arc of 1.000 mm radius"]);
+}

@@ -1,9 +1,8 @@
 //! Carries out what was asked, and turns the outcome into an exit status.
 
-use std::io::IsTerminal;
 use std::path::{Path, PathBuf};
 
-use super::args::{CheckArgs, Cli, ColorWhen, Command, EnvelopeArgs, SchemaName};
+use super::args::{CheckArgs, Cli, Command, EnvelopeArgs, SchemaName};
 use super::check;
 use super::draft::{Draft, Named, command_line};
 use super::exit::Exit;
@@ -78,7 +77,7 @@ fn judged(request: &Check, args: &CheckArgs, titled: bool) -> Result<Exit, Refus
         if titled {
             text = format!("== {} ==\n", request.name);
         }
-        text.push_str(&judge::text(&report, colored(args.color)));
+        text.push_str(&judge::text(&report, output::width(), output::colored(args.color)));
         if titled {
             text.push('\n');
         }
@@ -102,19 +101,6 @@ fn render(report: &Report, outputs: &Outputs) -> Result<Vec<Rendered>, Refusal> 
     add(&outputs.svg, &|| Ok(svg::render(report).into_bytes()))?;
     add(&outputs.dxf, &|| Ok(dxf::render(&report.drawing.swept, report.unit).into_bytes()))?;
     Ok(files)
-}
-
-/// Colour on a terminal only, unless the user or NO_COLOR (no-color.org) says otherwise.
-fn colored(when: ColorWhen) -> bool {
-    match when {
-        ColorWhen::Always => true,
-        ColorWhen::Never => false,
-        ColorWhen::Auto => {
-            let refused = std::env::var_os("NO_COLOR").is_some_and(|v| !v.is_empty());
-            let dumb = std::env::var_os("TERM").is_some_and(|v| v == "dumb");
-            !refused && !dumb && std::io::stdout().is_terminal()
-        }
-    }
 }
 
 fn run_envelope(args: &EnvelopeArgs) -> Result<(), Refusal> {

@@ -60,8 +60,7 @@ pub fn curved_part(path: Path, bound: f64, keep: Keep) -> Part {
 }
 
 pub fn family(segments: &[Segment], radius: f64) -> DiscFamily {
-    let moves =
-        (0u32..).zip(segments).map(|(i, &segment)| DiscMove { segment, radius, source: MoveIndex(i) });
+    let moves = (0u32..).zip(segments).map(|(i, &segment)| DiscMove::constant(segment, radius, MoveIndex(i)));
     DiscFamily { moves: moves.collect() }
 }
 

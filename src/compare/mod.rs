@@ -12,6 +12,7 @@ mod excess;
 mod folds;
 mod gouge;
 mod law;
+mod level;
 mod passes;
 mod regions;
 mod scan;
@@ -207,7 +208,7 @@ pub struct Request {
 }
 
 /// Bound of every figure of a comparison, a length: what reading the drawing and the program cost,
-/// arcs whose ends lie off their circle, and arithmetic.
+/// arcs whose ends lie off their circle, half of what a radius changes over one move, and arithmetic.
 #[must_use]
 pub fn figure_bound(part: &Part, cutting: &DiscFamily, request: &Request) -> f64 {
     let off = |s: &Segment| targets::residual(s);
@@ -215,7 +216,7 @@ pub fn figure_bound(part: &Part, cutting: &DiscFamily, request: &Request) -> f64
     let moved = cutting.moves.iter().map(|m| off(&m.segment)).fold(0.0, f64::max);
     // Ties are settled to `figure`; formulas and side slips each cost less than `coincidence`.
     let arithmetic = request.tolerances.figure + 4.0 * request.tolerances.coincidence;
-    part.contour.bound() + request.program_bound + drawn + moved + arithmetic
+    part.contour.bound() + request.program_bound + drawn + moved + arithmetic + level::cost(cutting)
 }
 
 /// Compares what the moves of `cutting` leave with `part`, both ways. Material is on the left of every
@@ -225,6 +226,9 @@ pub fn figure_bound(part: &Part, cutting: &DiscFamily, request: &Request) -> f64
 /// visited, and there are no figures of excess, because no distance from nothing exists.
 #[must_use]
 pub fn compare(part: &Part, cutting: &DiscFamily, rapids: &DiscFamily, request: &Request) -> Comparison {
+    let changes = level::cost(cutting).max(level::cost(rapids));
+    let request = &Request { program_bound: request.program_bound + changes, ..*request };
+    let (cutting, rapids) = (&*level::levelled(cutting), &*level::levelled(rapids));
     let mut out = Comparison::default();
     let walls = Walls::new(&part.contour);
     let bound = figure_bound(part, cutting, request);

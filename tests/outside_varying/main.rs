@@ -3,17 +3,59 @@
 //! Sources beside each test. The closed forms here share no code with the sweep: envelope points come from
 //! the named curve, exposure from a plain scan over the circles.
 
-#![allow(clippy::unwrap_used, clippy::panic, reason = "a test may stop at the first surprise")]
+#![allow(
+    clippy::unwrap_used,
+    clippy::expect_used,
+    clippy::panic,
+    reason = "a test may stop at the first surprise"
+)]
+
+mod named;
+#[path = "../sheet/mod.rs"]
+mod sheet;
 
 use std::f64::consts::{PI, TAU};
 
+use named::{By, E, Named, Through, off_edge};
+use sheet::Sheet;
 use sweptedge::envelope::{SweptRegion, sweep, sweep_laws};
 use sweptedge::geometry::{Point, Segment, Vec2};
 use sweptedge::program::MoveIndex;
-use sweptedge::tolerance::CURVE_ERROR_MM;
 use sweptedge::view::{DiscFamily, DiscLaw, DiscMove, Lean, departure_by_second_derivatives};
 
-const E: f64 = CURVE_ERROR_MM;
+const BELT: Sheet = Sheet::new(
+    "Radius linear along a line",
+    "Common outer tangents of two circles (belt formula); envelope of circles as in the encyclopedic entry \
+     Channel surface, section Canal surface.",
+);
+const CONICS: Sheet = Sheet::new(
+    "Bitangent circles of a conic",
+    "H. Blum 1967; any text on the medial axis and the evolute (from memory, verified by the envelope condition).",
+);
+const NEPHROID: Sheet = Sheet::new(
+    "Circles on a circle that touch a diameter of it",
+    "S. Dutch, Nephroid; encyclopedic entry Nephroid, envelope of a pencil of circles and metric properties.",
+);
+const LIMACONS: Sheet = Sheet::new(
+    "Circles on a circle through a point",
+    "D. Joseph, Limacons as Envelopes of Circles, 2011; D. Darling, Cardioid.",
+);
+const PARABOLA: Sheet = Sheet::new(
+    "Circles on a parabola through a point of its axis",
+    "E. W. Weisstein, CRC Concise Encyclopedia of Mathematics, Parabola Pedal Curve.",
+);
+const FOCUS: Sheet = Sheet::new(
+    "Circles on a conic through a focus",
+    "Reflection property of the conics (from memory; any text on conics).",
+);
+const LEMNISCATE: Sheet = Sheet::new(
+    "Circles on a rectangular hyperbola through its center",
+    "J. D. Cook, Lemniscate, 2023; union of the two end circles by inversion.",
+);
+const INVOLUTE: Sheet = Sheet::new(
+    "Parallel of an involute",
+    "C. Huygens, Horologium Oscillatorium, 1673 (from memory; any gear text).",
+);
 
 fn p(x: f64, y: f64) -> Point {
     Point::new(x, y)
@@ -27,142 +69,20 @@ fn taper(from: Point, radius: f64, to: Point, end_radius: f64) -> SweptRegion {
     region
 }
 
-fn off_edge(region: &SweptRegion, q: Point) -> f64 {
-    region.segments().map(|s| s.distance(q)).fold(f64::INFINITY, f64::min)
-}
-
 fn has_joint(region: &SweptRegion, q: Point, within: f64) -> bool {
     region.segments().any(|s| (s.start() - q).hypot() <= within)
 }
 
-/// A law by functions, with its bound.
-struct By<A: Fn(f64) -> (Point, f64), B: Fn(f64, f64) -> f64>(A, B);
-
-impl<A: Fn(f64) -> (Point, f64), B: Fn(f64, f64) -> f64> DiscLaw for By<A, B> {
-    fn at(&self, t: f64) -> (Point, f64) {
-        self.0(t)
-    }
-    fn departure(&self, from: f64, to: f64) -> f64 {
-        self.1(from, to)
-    }
-}
-
-/// Circles about the points of a curve, all through one point `o`. `speed` and `bend` bound the curve's
-/// first and second derivative over t in [0, 1].
-struct Through<C: Fn(f64) -> Point> {
-    center: C,
-    o: Point,
-    speed: f64,
-    bend: f64,
-}
-
-impl<C: Fn(f64) -> Point> DiscLaw for Through<C> {
-    fn at(&self, t: f64) -> (Point, f64) {
-        let c = (self.center)(t);
-        (c, (c - self.o).hypot())
-    }
-
-    /// r = |c - o|: r'' is the part of c'' along c - o plus the square of the part of c' across it over r.
-    /// Near o, where that has no bound, r and its chord differ by no more than the way run.
-    fn departure(&self, from: f64, to: f64) -> f64 {
-        let h = to - from;
-        let least = (self.at(0.5 * (from + to)).1 - 0.5 * h * self.speed).max(0.0);
-        let second = departure_by_second_derivatives(0.0, self.bend + self.speed * self.speed / least, h);
-        departure_by_second_derivatives(self.bend, 0.0, h) + second.min(self.speed * h)
-    }
-}
-
-impl<C: Fn(f64) -> Point> Through<C> {
-    /// The envelope's other point: `o` mirrored in the tangent at t (orthotomic; the tangent by a central
-    /// difference).
-    fn mirrored(&self, t: f64) -> Point {
-        let c = (self.center)(t);
-        let d = ((self.center)(t + 1e-6) - (self.center)(t - 1e-6)).normalize();
-        let v = self.o - c;
-        c + d * (2.0 * v.dot(d)) - v
-    }
-}
-
-/// Holds a sweep against the curve it must have for an edge: every exposed point of the curve lies on the
-/// edge, and every point of the edge lies on the curve (first-order distance by its equation), on one of
-/// the `discs` at the ends, or at one of the `apart` points.
-struct Named<'a> {
-    laws: Vec<&'a dyn DiscLaw>,
-    envelope: Vec<Point>,
-    equation: &'a dyn Fn(Point) -> f64,
-    apart: Vec<Point>,
-    open: bool,
-}
-
-impl Named<'_> {
-    fn exposed(&self, q: Point) -> bool {
-        let discs = self.laws.iter().flat_map(|l| (0..=3000).map(|i| l.at(f64::from(i) / 3000.0)));
-        discs.map(|(c, r)| (q - c).hypot() - r).fold(f64::INFINITY, f64::min) > -1e-9
-    }
-
-    fn check(&self) -> SweptRegion {
-        // Where all circles pass through one point the smaller ones leave a hole there of the bound's
-        // size, edged by every one of them: a coarser bound keeps that case short.
-        let coarse = if self.apart.is_empty() { E } else { 10.0 * E };
-        let [inside, outside, either] =
-            [(Lean::Inside, coarse), (Lean::Outside, E), (Lean::Either, E)].map(|(lean, within)| {
-                sweep_laws(&self.laws, within, lean).unwrap_or_else(|e| panic!("{lean:?}: {e}"))
-            });
-        let mut seen = 0;
-        for &q in &self.envelope {
-            if self.exposed(q) {
-                seen += 1;
-                // Outside of the smaller sweep the distance is the clearance: at most the bound.
-                let off = off_edge(&inside, q);
-                assert!(off <= inside.bound + 1e-8, "{q:?} is {off:e} off the inner edge");
-                let apart = self.apart.iter().any(|o| (q - *o).hypot() <= 0.05);
-                let off = off_edge(&either, q);
-                assert!(apart || off <= 1.5 * either.bound, "{q:?} is {off:e} off the edge");
-            }
-        }
-        assert!(2 * seen >= self.envelope.len().min(40), "{seen} exposed");
-        for region in [&outside, &either] {
-            let mut on_curve = 0;
-            for s in region.segments() {
-                for k in 0..3 {
-                    let q = s.point_at(0.2 + 0.3 * f64::from(k));
-                    let value = (self.equation)(q);
-                    let step = 1e-5;
-                    let slope = |d: Vec2| ((self.equation)(q + d) - (self.equation)(q - d)) / (2.0 * step);
-                    let gradient = slope(Vec2::new(step, 0.0)).hypot(slope(Vec2::new(0.0, step)));
-                    if value.abs() <= 1.05 * region.bound * gradient {
-                        on_curve += 1;
-                        continue;
-                    }
-                    let ends = self.laws.iter().flat_map(|l| [l.at(0.0), l.at(1.0)]);
-                    let at_end = self.open
-                        && ends.into_iter().any(|(c, r)| ((q - c).hypot() - r).abs() <= region.bound);
-                    let apart = self.apart.iter().any(|o| (q - *o).hypot() <= 0.05);
-                    assert!(
-                        at_end || apart,
-                        "{q:?} of the edge: equation {value:e}, gradient {gradient:e}, distance {:e}",
-                        value.abs() / gradient
-                    );
-                }
-            }
-            assert!(on_curve > 40, "{on_curve} points of the edge on the curve");
-        }
-        either
-    }
-}
-
-fn assert_area(region: &SweptRegion, expected: f64) {
-    let slack = region.bound * region.perimeter();
-    let area = region.area();
-    assert!((area - expected).abs() <= slack, "area {area}, expected {expected} within {slack}");
+fn assert_area(sheet: Sheet, name: &str, region: &SweptRegion, expected: f64) {
+    sheet.holds(format!("{name}: area"), expected, region.area(), region.bound * region.perimeter());
 }
 
 /// Hull of two discs (belt formula).
 #[test]
 fn tapered_cut_has_the_tangents_area_and_perimeter_of_the_belt_formula() {
     let region = taper(p(0.0, 0.0), 1.0, p(10.0, 0.0), 3.0);
-    assert!((region.area() - 56.510_662_518_8).abs() < 1e-9, "{}", region.area());
-    assert!((region.perimeter() - 32.967_720_239_8).abs() < 1e-9, "{}", region.perimeter());
+    BELT.holds("discs of 1 and 3, 10 apart: area", 56.510_662_518_8, region.area(), 1e-9);
+    BELT.holds("discs of 1 and 3, 10 apart: perimeter", 32.967_720_239_8, region.perimeter(), 1e-9);
     for (x, y) in [(-0.2, 0.979_795_897_113), (9.4, 2.939_387_691_34)] {
         assert!(has_joint(&region, p(x, y), 1e-11) && has_joint(&region, p(x, -y), 1e-11));
     }
@@ -170,7 +90,7 @@ fn tapered_cut_has_the_tangents_area_and_perimeter_of_the_belt_formula() {
     for s in lines {
         let d = s.tangent_at(0.5);
         let angle = (d.y / d.x).atan().abs().to_degrees();
-        assert!((angle - 11.536_959_032_8).abs() < 1e-9, "half angle {angle}");
+        BELT.holds("discs of 1 and 3, 10 apart: half angle, degrees", 11.536_959_032_8, angle, 1e-9);
     }
 }
 
@@ -201,7 +121,16 @@ fn bitangent_circles_of_a_parabola_give_it_back() {
     let envelope = (0..=200).map(|i| contact(y(f64::from(i) / 200.0)));
     let envelope = envelope.flat_map(|q| [q, p(-q.x, q.y)]).collect();
     let equation = |q: Point| q.y - q.x * q.x;
-    Named { laws: vec![&law], envelope, equation: &equation, apart: vec![], open: true }.check();
+    Named {
+        sheet: CONICS,
+        name: "parabola",
+        laws: vec![&law],
+        envelope,
+        equation: &equation,
+        apart: vec![],
+        open: true,
+    }
+    .check();
 }
 
 /// Bitangent circles of an ellipse between its osculating circles: their union is the ellipse.
@@ -226,8 +155,17 @@ fn bitangent_circles_of_an_ellipse_give_it_back() {
     assert!((contact(10.0, 1.0) - p(13.333_333_333_3, 18.856_180_831_6)).hypot() < 1e-9);
     let envelope = (0..=200).flat_map(|i| [1.0, -1.0].map(|s| contact(x(f64::from(i) / 200.0), s))).collect();
     let equation = |q: Point| q.x * q.x / (a * a) + q.y * q.y / (b * b) - 1.0;
-    let region = Named { laws: vec![&law], envelope, equation: &equation, apart: vec![], open: true }.check();
-    assert_area(&region, PI * a * b);
+    let region = Named {
+        sheet: CONICS,
+        name: "ellipse 40, 20",
+        laws: vec![&law],
+        envelope,
+        equation: &equation,
+        apart: vec![],
+        open: true,
+    }
+    .check();
+    assert_area(CONICS, "ellipse 40, 20", &region, PI * a * b);
 }
 
 /// S. Dutch, "Nephroid"; the same statement in the encyclopedic entry: circles centred on a circle of radius
@@ -253,13 +191,16 @@ fn circles_that_touch_a_diameter_give_the_nephroid() {
     let equation = |q: Point| (q.x * q.x + q.y * q.y - 4.0 * a * a).powi(3) - 108.0 * a.powi(4) * q.y * q.y;
     let apart = vec![p(2.0 * a, 0.0), p(-2.0 * a, 0.0)];
     let laws: Vec<&dyn DiscLaw> = vec![&upper, &lower];
-    let region = Named { laws, envelope, equation: &equation, apart, open: false }.check();
-    assert_area(&region, 37.699_111_843_1);
-    assert!((region.perimeter() - 24.0 * a).abs() < 0.01, "length {}", region.perimeter());
+    let region =
+        Named { sheet: NEPHROID, name: "nephroid", laws, envelope, equation: &equation, apart, open: false }
+            .check();
+    assert_area(NEPHROID, "nephroid", &region, 37.699_111_843_1);
+    NEPHROID.holds("nephroid: length", 24.0 * a, region.perimeter(), 0.01);
 }
 
 /// A curve of centres with bounds of its derivatives, swept by circles through `o`.
 fn orthotomic<C: Fn(f64) -> Point>(
+    (sheet, name): (Sheet, &str),
     law: &Through<C>,
     equation: &dyn Fn(Point) -> f64,
     open: bool,
@@ -269,7 +210,7 @@ fn orthotomic<C: Fn(f64) -> Point>(
         let scale = 1.0 + q.to_vec2().hypot().powi(4);
         assert!(equation(*q).abs() < 1e-6 * scale, "{q:?}: equation {:e}", equation(*q));
     }
-    Named { laws: vec![law], envelope, equation, apart: vec![law.o], open }.check()
+    Named { sheet, name, laws: vec![law], envelope, equation, apart: vec![law.o], open }.check()
 }
 
 /// D. Joseph, "Limacons as Envelopes of Circles" (2011); D. Darling, "Cardioid".
@@ -289,10 +230,11 @@ fn circles_on_a_circle_through_a_point_give_cardioid_and_limacon() {
             let r2 = q.x * q.x + q.y * q.y;
             (r2 - 2.0 * b * q.x).powi(2) - 4.0 * a * a * r2
         };
-        let region = orthotomic(&law, &equation, false);
-        assert_area(&region, area);
+        let name = if b < a { "limacon 10, 4" } else { "cardioid" };
+        let region = orthotomic((LIMACONS, name), &law, &equation, false);
+        assert_area(LIMACONS, name, &region, area);
         let length = if b < a { 130.742_666_992 } else { 16.0 * a };
-        assert!((region.perimeter() - length).abs() < 0.01, "{}", region.perimeter());
+        LIMACONS.holds(format!("{name}: length"), length, region.perimeter(), 0.01);
         assert_eq!(region.loops.len(), 1);
     }
 }
@@ -312,12 +254,17 @@ fn circles_on_a_parabola_through_a_point_give_directrix_cissoid_strophoid_and_tr
         bend: 0.5 * 4.0 * reach * reach,
     };
     let at = |y: f64| 0.5 * (1.0 + y / reach);
-    orthotomic(&on(1.0), &|q| q.x + 1.0, true);
+    orthotomic((PARABOLA, "focus: directrix"), &on(1.0), &|q| q.x + 1.0, true);
 
     let cissoid = on(0.0);
     assert!((cissoid.mirrored(at(2.0)) - p(-1.0, 1.0)).hypot() < 1e-8);
     assert!((cissoid.mirrored(at(4.0)) - p(-1.6, 3.2)).hypot() < 1e-8);
-    orthotomic(&cissoid, &|q| q.x * (q.x * q.x + q.y * q.y) + 2.0 * q.y * q.y, true);
+    orthotomic(
+        (PARABOLA, "vertex: cissoid"),
+        &cissoid,
+        &|q| q.x * (q.x * q.x + q.y * q.y) + 2.0 * q.y * q.y,
+        true,
+    );
 
     let strophoid = on(-1.0);
     assert!((strophoid.mirrored(at(4.0)) - p(-2.2, 2.4)).hypot() < 1e-8);
@@ -325,7 +272,7 @@ fn circles_on_a_parabola_through_a_point_give_directrix_cissoid_strophoid_and_tr
         let x = q.x + 1.0;
         q.y * q.y * (2.0 + x) - x * x * (2.0 - x)
     };
-    orthotomic(&strophoid, &equation, true);
+    orthotomic((PARABOLA, "foot of the directrix: strophoid"), &strophoid, &equation, true);
 
     let trisectrix = on(-3.0);
     assert!((trisectrix.mirrored(at(2.0)) - p(-1.0, -2.0)).hypot() < 1e-8);
@@ -333,7 +280,7 @@ fn circles_on_a_parabola_through_a_point_give_directrix_cissoid_strophoid_and_tr
         let x = q.x + 3.0;
         x * (x * x + q.y * q.y) - 2.0 * (3.0 * x * x - q.y * q.y)
     };
-    orthotomic(&trisectrix, &equation, true);
+    orthotomic((PARABOLA, "mirrored focus: trisectrix"), &trisectrix, &equation, true);
 }
 
 /// Reflection property of the conics: a focus mirrored in a tangent lies on the circle of radius 2a about
@@ -348,8 +295,8 @@ fn circles_on_a_conic_through_a_focus_give_the_circle_about_the_other_focus() {
         speed: TAU * a,
         bend: TAU * TAU * a,
     };
-    let region = orthotomic(&law, &|q| (q - p(-c, 0.0)).hypot() - 2.0 * a, false);
-    assert_area(&region, PI * 100.0);
+    let region = orthotomic((FOCUS, "ellipse 5, 3"), &law, &|q| (q - p(-c, 0.0)).hypot() - 2.0 * a, false);
+    assert_area(FOCUS, "ellipse 5, 3", &region, PI * 100.0);
 
     let (a, b) = (1.0f64, 1.5f64);
     let c = a.hypot(b);
@@ -359,7 +306,7 @@ fn circles_on_a_conic_through_a_focus_give_the_circle_about_the_other_focus() {
         speed: 2.0 * 1f64.cosh() * a.hypot(b),
         bend: 4.0 * 1f64.cosh() * a.hypot(b),
     };
-    orthotomic(&law, &|q| (q - p(-c, 0.0)).hypot() - 2.0 * a, true);
+    orthotomic((FOCUS, "hyperbola 1, 1.5"), &law, &|q| (q - p(-c, 0.0)).hypot() - 2.0 * a, true);
 }
 
 /// J. D. Cook, "Lemniscate" (2023): circles on a rectangular hyperbola through its centre envelop the
@@ -386,7 +333,7 @@ fn circles_on_a_rectangular_hyperbola_envelop_the_lemniscate_inside_and_leave_tw
     }
     let (r, half) = ((2.0 * reach).cosh().sqrt(), reach.sinh());
     let lens = 2.0 * r * r * (half / r).acos() - 2.0 * half * (r * r - half * half).sqrt();
-    assert_area(&region, TAU * r * r - lens);
+    assert_area(LEMNISCATE, "two end circles", &region, TAU * r * r - lens);
 }
 
 /// C. Huygens, Horologium Oscillatorium (1673): the parallel of an involute of a circle is the same
@@ -418,5 +365,14 @@ fn kerf_along_an_involute_leaves_the_same_involute_turned() {
         let foot = q.y.atan2(q.x) + (string / a).atan();
         (string - a * foot).abs() - kerf
     };
-    Named { laws: vec![&law], envelope, equation: &equation, apart: vec![], open: true }.check();
+    Named {
+        sheet: INVOLUTE,
+        name: "base circle 10, kerf 0.15",
+        laws: vec![&law],
+        envelope,
+        equation: &equation,
+        apart: vec![],
+        open: true,
+    }
+    .check();
 }

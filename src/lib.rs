@@ -44,7 +44,7 @@
 //!     Segment::line(Point::new(0.0, 0.0), Point::new(20.0, 0.0)),
 //!     Segment::line(Point::new(20.0, 0.0), Point::new(20.0, 20.0)),
 //! ];
-//! let moves = (0..).zip(legs).map(|(i, segment)| DiscMove { segment, radius, source: MoveIndex(i) });
+//! let moves = (0..).zip(legs).map(|(i, segment)| DiscMove::constant(segment, radius, MoveIndex(i)));
 //! let family = DiscFamily { moves: moves.collect() };
 //!
 //! let region = sweep(&family)?;

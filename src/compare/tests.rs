@@ -218,7 +218,7 @@ fn stadium(half: f64) -> (Part, DiscFamily) {
 fn cutter_that_is_too_small_leaves_the_difference_all_round() {
     let (part, mut path) = stadium(10.0);
     for m in &mut path.moves {
-        m.radius = 2.9;
+        (m.radius, m.end_radius) = (2.9, 2.9);
     }
     let found = judged(&part, &path, 0.05);
     assert_eq!(found.excesses.len(), 1);
@@ -269,7 +269,7 @@ fn retraced_path_gives_the_figures_of_the_plain_one() {
     let (part, plain) = stadium(10.0);
     let mut twice = plain.clone();
     for m in &mut twice.moves {
-        m.radius = 2.9;
+        (m.radius, m.end_radius) = (2.9, 2.9);
     }
     let back: Vec<DiscMove> = twice.moves.iter().rev().map(|m| m.reversed()).collect();
     for _ in 0..12 {
@@ -335,7 +335,7 @@ fn allowance_is_taken_off_the_excess_and_not_added_to_the_gouge() {
     let (mut part, path) = stadium(10.0);
     let mut wider = path.clone();
     for m in &mut wider.moves {
-        m.radius = 2.7;
+        (m.radius, m.end_radius) = (2.7, 2.7);
     }
     part.allowance = 0.3;
     let found = judged(&part, &wider, 1e-6);

@@ -98,7 +98,7 @@ impl RawEdge {
                         && b.end_radius.to_bits() == m.radius.to_bits()
                 });
                 if !follows || m.is_constant() {
-                    edge.tapered(&taper, coincidence);
+                    edge.tapered(&taper, family, coincidence);
                     taper.clear();
                 }
             }
@@ -125,7 +125,7 @@ impl RawEdge {
             }
         }
         edge.chain(&chain, radius, coincidence);
-        edge.tapered(&taper, coincidence);
+        edge.tapered(&taper, family, coincidence);
         edge
     }
 

@@ -21,7 +21,7 @@
 use std::f64::consts::PI;
 
 use crate::geometry::{Arc, Point, Segment, Vec2};
-use crate::view::DiscMove;
+use crate::view::{DiscFamily, DiscMove};
 
 use super::raw::{Outward, Pen, RawEdge};
 use super::sweep::between;
@@ -84,24 +84,46 @@ fn swallowed(m: &DiscMove, coincidence: f64) -> bool {
     length <= coincidence || length - (m.end_radius - m.radius).abs() <= 0.125 * coincidence
 }
 
+/// Is `m` the move `before` travelled back, to the last digit?
+fn retraces(m: &DiscMove, before: &DiscMove) -> bool {
+    let back = before.reversed();
+    m.segment == back.segment
+        && m.radius.to_bits() == back.radius.to_bits()
+        && m.end_radius.to_bits() == back.end_radius.to_bits()
+}
+
+/// Has the larger disc of the swallowed move at `i` an edge already, as the cap of the move that goes on
+/// from it (or came to it)?
+fn shown_beside(i: u32, m: &DiscMove, family: &DiscFamily, coincidence: f64) -> bool {
+    let (large, beside) = if m.end_radius >= m.radius {
+        (m.reversed(), family.moves.get(i as usize + 1).copied())
+    } else {
+        (*m, (i as usize).checked_sub(1).and_then(|i| family.moves.get(i)).map(DiscMove::reversed))
+    };
+    beside.is_some_and(|n| {
+        n.segment.start() == large.segment.start()
+            && n.radius.to_bits() == large.radius.to_bits()
+            && !swallowed(&n, coincidence)
+    })
+}
+
 impl RawEdge {
     /// Adds the raw edge of a chain of straight moves of varying radius. A move that one of its discs
-    /// swallows divides the chain; the disc stands for it.
-    pub(super) fn tapered(&mut self, chain: &[(u32, DiscMove)], coincidence: f64) {
+    /// swallows divides the chain, and the disc stands for it; one that retraces the move before adds
+    /// nothing.
+    pub(super) fn tapered(&mut self, chain: &[(u32, DiscMove)], family: &DiscFamily, coincidence: f64) {
         let mut from = 0;
         for (k, (i, m)) in chain.iter().enumerate() {
-            if !swallowed(m, coincidence) {
+            let retraced = k > from && chain.get(k - 1).is_some_and(|(_, b)| retraces(m, b));
+            if !retraced && !swallowed(m, coincidence) {
                 continue;
             }
             self.hulls(chain.get(from..k).unwrap_or_default(), coincidence);
             from = k + 1;
-            let grows = m.end_radius >= m.radius;
-            let beside = if grows { chain.get(k + 1) } else { k.checked_sub(1).and_then(|k| chain.get(k)) };
-            // A neighbour that is not swallowed draws the disc as its own cap.
-            if beside.is_some_and(|(_, n)| !swallowed(n, coincidence)) || m.greatest_radius() <= coincidence {
+            if retraced || m.greatest_radius() <= coincidence || shown_beside(*i, m, family, coincidence) {
                 continue;
             }
-            let center = if grows { m.segment.end() } else { m.segment.start() };
+            let center = if m.end_radius >= m.radius { m.segment.end() } else { m.segment.start() };
             let start = self.pieces.len();
             self.disc(*i, center, m.greatest_radius());
             self.ring(start, *i..*i + 1, true);

@@ -2,13 +2,18 @@
 
 use super::fixture::*;
 use crate::compare::{Clear, Request, compare, deviation_summary};
-use crate::findings::{Cause, Finding, Kind, Verdict};
+use crate::findings::{Cause, Finding, Judgement, Kind, Verdict};
 use crate::geometry::{Path, Point, Segment, Turn, Vec2};
 use crate::part::Keep;
 use crate::tolerance::Tolerances;
 
 /// Verdict and findings of a case, compared as `check` does.
-fn judged(mut case: Case) -> (Verdict, Vec<Finding>) {
+fn judged(case: Case) -> (Verdict, Vec<Finding>) {
+    let judgement = judgement(case);
+    (judgement.verdict, judgement.findings)
+}
+
+fn judgement(mut case: Case) -> Judgement {
     let request = Request {
         gouge: case.limits.gouge,
         excess: case.limits.excess,
@@ -20,8 +25,7 @@ fn judged(mut case: Case) -> (Verdict, Vec<Finding>) {
     };
     case.comparison = compare(&case.part, &case.cutting, &case.rapids, &request);
     case.comparison.deviation = deviation_summary(&case.part, &case.cutting);
-    let judgement = case.judge();
-    (judgement.verdict, judgement.findings)
+    case.judge()
 }
 
 /// A rectangle of 100 by 60, cut round along the rectangle larger by `out` on every side.
@@ -64,8 +68,11 @@ fn a_cutter_of_10_2_or_9_8_for_10_is_one_finding_that_says_10() {
 fn a_wall_that_was_left_out_is_a_missed_pass() {
     let mut case = rectangle_case(Keep::Inside, 5.0, 5.0);
     case.cutting.moves.truncate(3);
-    let (_, findings) = judged(case);
-    assert_eq!(causes(&findings), [(Kind::Excess, Cause::MissedPass)]);
+    let judgement = judgement(case);
+    assert_eq!(causes(&judgement.findings), [(Kind::Excess, Cause::MissedPass)]);
+    // The passes on either side stand too far apart to leave a crest between them.
+    assert_eq!(judgement.worst.cusp, None);
+    assert_eq!(judgement.worst.excess.map(|f| f.size), Some(judgement.findings[0].figure.size));
 }
 
 #[test]

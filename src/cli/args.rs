@@ -159,6 +159,23 @@ pub struct CheckArgs {
     /// When to color the report
     #[arg(long, value_name = "WHEN", default_value = "auto", value_enum, help_heading = "Output")]
     pub color: ColorWhen,
+    #[command(flatten)]
+    pub running: RunningArgs,
+}
+
+/// Most threads that may be asked for: more than any machine of a shop has cores.
+const MOST_THREADS: i64 = 1024;
+
+/// How the work is done.
+#[derive(Clone, Copy, Debug, Default, Args)]
+#[command(next_help_heading = "Running")]
+pub struct RunningArgs {
+    /// Use this many cores; the results are the same [default: all]
+    #[arg(long, value_name = "N", value_parser = clap::value_parser!(u16).range(0..=MOST_THREADS))]
+    pub threads: Option<u16>,
+    /// Tell the milliseconds of each stage on standard error
+    #[arg(long)]
+    pub timings: bool,
 }
 
 /// The drawing and where it lies.
@@ -275,6 +292,8 @@ pub struct EnvelopeArgs {
     /// Print no summary
     #[arg(long, short, help_heading = "Output")]
     pub quiet: bool,
+    #[command(flatten)]
+    pub running: RunningArgs,
 }
 
 const INSPECT_FOOT: &str = "\

@@ -7,6 +7,7 @@ use super::files;
 use super::judge;
 use super::lay::{Laid, lay};
 use super::request::{Check, LimitsRequest, PartRequest, ProgramRequest};
+use super::stages::Stages;
 use crate::compare::{WorkingSide, working_side};
 use crate::findings::{self, Facts, Inputs, Limits, Report, SweptSummary, Tool};
 use crate::geometry::{Contour, Point, Segment};
@@ -22,28 +23,31 @@ use crate::view::{DiscFamily, PlanError, PlanView, plan};
 ///
 /// # Errors
 /// When an input cannot be read or judged; then nothing was written.
-pub fn check(check: &Check) -> Result<Report, Refusal> {
-    let drawing = read_drawing(&check.part, check.program.units)?;
-    let program = read_program(&check.program, drawing.value.unit)?;
+pub fn check(check: &Check, stages: &Stages) -> Result<Report, Refusal> {
+    let drawing = stages.run("read drawing", || read_drawing(&check.part, check.program.units))?;
+    let program = stages.run("read program", || read_program(&check.program, drawing.value.unit))?;
     let mut warnings = [drawing.problems, program.problems].concat();
     let program = program.value;
     let layers = taken(&drawing.value, &check.part.layers);
-    let Laid { contour, origins, placement, warnings: more } = lay(drawing.value, program.unit, &check.part)?;
+    let Laid { contour, origins, placement, warnings: more } =
+        stages.run("lay drawing", || lay(drawing.value, program.unit, &check.part))?;
     warnings.extend(more);
-    let view = view(&program, &check.program)?;
+    let view = stages.run("view", || view(&program, &check.program))?;
     let keep = match fixed(check.part.keep) {
         Some(keep) => keep,
-        None => found_side(&contour, &view.cutting, &program, &check.part.file)?,
+        None => stages.run("find material side", || {
+            found_side(&contour, &view.cutting, &program, &check.part.file)
+        })?,
     };
-    let part = Part::new(contour, keep, check.part.allowance, origins)
-        .map_err(|e| vec![refused_part(&check.part.file, &e.to_string())])?;
+    let part = stages.run("part", || Part::new(contour, keep, check.part.allowance, origins));
+    let part = part.map_err(|e| vec![refused_part(&check.part.file, &e.to_string())])?;
     warnings.extend(too_wide(&part, &view.cutting, &check.part.file, program.unit));
     let (limits, more) = limits(check.limits, program.unit, &check.program.file);
     warnings.extend(more);
-    let swept = judge::sweep(&view.cutting, &program)?;
+    let swept = stages.run("sweep", || judge::sweep(&view.cutting, &program))?;
     let asked = (check.clear, check.only_visited);
-    let comparison = judge::compare(&part, (&view, &swept), &program, &limits, asked);
-    let judgement = findings::judge(&Facts {
+    let comparison = judge::compare(&part, (&view, &swept), &program, &limits, asked, stages);
+    let facts = Facts {
         part: &part,
         program: &program,
         cutting: &view.cutting,
@@ -52,7 +56,8 @@ pub fn check(check: &Check) -> Result<Report, Refusal> {
         limits,
         unit: program.unit,
         top: check.program.top,
-    });
+    };
+    let judgement = stages.run("findings", || findings::judge(&facts));
     warnings.extend(judgement.warnings);
     let inputs = inputs(check, &part, &program, &view, layers, placement);
     Ok(Report {

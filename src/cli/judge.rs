@@ -3,6 +3,7 @@
 
 use super::args::{ClearName, ProgramFormatName};
 use super::draft::Named;
+use super::stages::Stages;
 use crate::compare::{self, Clear, Comparison, Regions, Request};
 use crate::envelope::{self, Clearance, SweptRegion};
 use crate::findings::{Limits, Report};
@@ -94,6 +95,7 @@ pub fn compare(
     program: &Program,
     limits: &Limits,
     (clear, only_visited): (ClearName, bool),
+    stages: &Stages,
 ) -> Comparison {
     let part_box = part.contour.bounds();
     let all = view.cutting.bounds().map_or(part_box, |b| b.union(part_box));
@@ -110,12 +112,15 @@ pub fn compare(
         program_bound: program.bound,
         tolerances,
     };
-    let mut comparison = compare::compare(part, &view.cutting, &view.rapids, &request);
-    comparison.deviation = compare::deviation_summary(part, &view.cutting);
+    let families = (&view.cutting, &view.rapids);
+    let mut comparison = compare::compare_watched(part, families, &request, stages);
+    comparison.deviation = stages.run("deviation", || compare::deviation_summary(part, &view.cutting));
     if !(comparison.gouges.is_empty() && comparison.excesses.is_empty()) {
         // Swept edge and contour that agree within what both are known to are one line.
         let within = compare::figure_bound(part, &view.cutting, &request).max(swept.bound);
-        Regions::new(part, swept, &Clearance::new(&view.cutting), within).attach(&mut comparison);
+        stages.run("regions", || {
+            Regions::new(part, swept, &Clearance::new(&view.cutting), within).attach(&mut comparison);
+        });
     }
     comparison
 }

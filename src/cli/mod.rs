@@ -16,6 +16,7 @@ mod lay;
 mod output;
 mod request;
 mod run;
+mod stages;
 mod table;
 
 use std::process::ExitCode;

@@ -206,6 +206,30 @@ pub struct Request {
     pub tolerances: Tolerances,
 }
 
+/// Is told which stage of a comparison begins and ends, from whichever thread does it.
+pub trait Watch: Sync {
+    /// The stage `name` begins.
+    fn begins(&self, name: &'static str);
+    /// The stage `name` has ended.
+    fn ends(&self, name: &'static str);
+}
+
+/// Nobody watches.
+struct Unwatched;
+
+impl Watch for Unwatched {
+    fn begins(&self, _name: &'static str) {}
+    fn ends(&self, _name: &'static str) {}
+}
+
+/// Does `work` as the stage `name`.
+fn stage<T>(watch: &dyn Watch, name: &'static str, work: impl FnOnce() -> T) -> T {
+    watch.begins(name);
+    let done = work();
+    watch.ends(name);
+    done
+}
+
 /// Bound of every figure of a comparison, a length: what reading the drawing and the program cost,
 /// arcs whose ends lie off their circle, and arithmetic.
 #[must_use]
@@ -225,11 +249,26 @@ pub fn figure_bound(part: &Part, cutting: &DiscFamily, request: &Request) -> f64
 /// visited, and there are no figures of excess, because no distance from nothing exists.
 #[must_use]
 pub fn compare(part: &Part, cutting: &DiscFamily, rapids: &DiscFamily, request: &Request) -> Comparison {
+    compare_watched(part, (cutting, rapids), request, &Unwatched)
+}
+
+/// [`compare`], the cutting moves and the rapids given together, telling `watch` of its stages.
+#[must_use]
+pub fn compare_watched(
+    part: &Part,
+    (cutting, rapids): (&DiscFamily, &DiscFamily),
+    request: &Request,
+    watch: &dyn Watch,
+) -> Comparison {
     let mut out = Comparison::default();
-    let walls = Walls::new(&part.contour);
+    let walls = stage(watch, "index contour", || Walls::new(&part.contour));
     let bound = figure_bound(part, cutting, request);
-    cutter_past_contour(part, &walls, (cutting, rapids), request, &mut out);
-    let moves = Targets::new(cutting.moves.iter().map(|m| (m.segment, m.radius)));
+    stage(watch, "gouges and rapids", || {
+        cutter_past_contour(part, &walls, (cutting, rapids), request, &mut out);
+    });
+    let moves = stage(watch, "index moves", || {
+        Targets::new(cutting.moves.iter().map(|m| (m.segment, m.radius)))
+    });
     if moves.is_empty() {
         out.never_visited = (0..part.contour.paths().len()).collect();
         return out;
@@ -243,7 +282,9 @@ pub fn compare(part: &Part, cutting: &DiscFamily, rapids: &DiscFamily, request: 
         only_visited: request.only_visited,
     };
     let passes = Passes::new(cutting);
-    out.folds = folds::folds(cutting, &walls, request.gouge + bound, &request.tolerances);
+    out.folds = stage(watch, "folds", || {
+        folds::folds(cutting, &walls, request.gouge + bound, &request.tolerances)
+    });
     let tracer = Tracer::new(&moves, &request.tolerances);
     let mut scanner = Scanner {
         walls: &walls,
@@ -252,10 +293,13 @@ pub fn compare(part: &Part, cutting: &DiscFamily, rapids: &DiscFamily, request: 
         tracer,
         limits: judge.clearances(),
         crest_from: part.allowance + bound,
+        allowance: part.allowance,
     };
-    excess::contour_not_reached(&part.contour, &mut scanner, &judge, &mut out);
+    stage(watch, "excesses and cusps", || {
+        excess::contour_not_reached(&part.contour, &mut scanner, &judge, &mut out);
+    });
     if request.clear == Clear::Area {
-        area_not_reached(part, (&walls, &moves), request, bound, &mut out);
+        stage(watch, "uncut area", || area_not_reached(part, (&walls, &moves), request, bound, &mut out));
     }
     out.excesses.sort_by(|a, b| b.height.size.total_cmp(&a.height.size));
     out

@@ -59,7 +59,6 @@ impl Targets {
         self.segments.is_empty()
     }
 
-    #[cfg(test)]
     pub(super) fn len(&self) -> usize {
         self.segments.len()
     }
@@ -95,6 +94,28 @@ impl Targets {
         let within = guess.map_or(f64::INFINITY, |g| g.1);
         let found = self.index.nearest(p, within, lifted).or(guess);
         found.map(|(k, d)| (k, d - shift))
+    }
+
+    /// Least distance of the straight `line` from any target, not counting radii, when it is below
+    /// `within`.
+    ///
+    /// Two segments that do not cross are nearest to one another at an end of one of them, or, line
+    /// beside arc, at the foot of the arc's centre. A target that crosses the line is at most half the
+    /// line's length away from one of its ends: a greater answer is therefore the least distance, and
+    /// tells that nothing crosses.
+    pub(super) fn least_from(&self, line: &Line, within: f64) -> Option<f64> {
+        let own = Segment::Line(*line);
+        let apart = |k: usize| {
+            let other = &self.segments[k];
+            let of_line = other.distance(line.start).min(other.distance(line.end));
+            let of_other = own.distance(other.start()).min(own.distance(other.end()));
+            let least = of_line.min(of_other);
+            match other {
+                Segment::Line(_) => least,
+                Segment::Arc(a) => least.min(other.distance(own.nearest(a.center()).at)),
+            }
+        };
+        self.index.nearest_to_box(own.bounds(), within, apart).map(|found| found.1)
     }
 
     /// Calls `visit` with every target whose distance from `p`, less its radius, may be at most `reach`.

@@ -168,7 +168,7 @@ const MOST_THREADS: i64 = 1024;
 
 /// How the work is done.
 #[derive(Clone, Copy, Debug, Default, Args)]
-#[command(next_help_heading = "Running")]
+#[command(next_help_heading = "Output")]
 pub struct RunningArgs {
     /// Use this many cores; the results are the same [default: all]
     #[arg(long, value_name = "N", value_parser = clap::value_parser!(u16).range(0..=MOST_THREADS))]

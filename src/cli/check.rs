@@ -24,8 +24,7 @@ use crate::view::{DiscFamily, PlanError, PlanView, plan};
 /// # Errors
 /// When an input cannot be read or judged; then nothing was written.
 pub fn check(check: &Check, stages: &Stages) -> Result<Report, Refusal> {
-    let drawing = stages.run("read drawing", || read_drawing(&check.part, check.program.units))?;
-    let program = stages.run("read program", || read_program(&check.program, drawing.value.unit))?;
+    let (drawing, program) = read_both(check, stages)?;
     let mut warnings = [drawing.problems, program.problems].concat();
     let program = program.value;
     let layers = taken(&drawing.value, &check.part.layers);
@@ -35,18 +34,22 @@ pub fn check(check: &Check, stages: &Stages) -> Result<Report, Refusal> {
     let view = stages.run("view", || view(&program, &check.program))?;
     let keep = match fixed(check.part.keep) {
         Some(keep) => keep,
-        None => stages.run("find material side", || {
-            found_side(&contour, &view.cutting, &program, &check.part.file)
-        })?,
+        None => stages
+            .run("find material side", || found_side(&contour, &view.cutting, &program, &check.part.file))?,
     };
     let part = stages.run("part", || Part::new(contour, keep, check.part.allowance, origins));
     let part = part.map_err(|e| vec![refused_part(&check.part.file, &e.to_string())])?;
     warnings.extend(too_wide(&part, &view.cutting, &check.part.file, program.unit));
     let (limits, more) = limits(check.limits, program.unit, &check.program.file);
     warnings.extend(more);
-    let swept = stages.run("sweep", || judge::sweep(&view.cutting, &program))?;
     let asked = (check.clear, check.only_visited);
-    let comparison = judge::compare(&part, (&view, &swept), &program, &limits, asked, stages);
+    // The figures are distances and need no swept edge: only the regions do.
+    let (swept, compared) = rayon::join(
+        || stages.run("sweep", || judge::sweep(&view.cutting, &program)),
+        || judge::compare(&part, &view, &program, &limits, asked, stages),
+    );
+    let swept = swept?;
+    let comparison = judge::with_regions(compared, &part, (&view, &swept), stages);
     let facts = Facts {
         part: &part,
         program: &program,
@@ -60,6 +63,8 @@ pub fn check(check: &Check, stages: &Stages) -> Result<Report, Refusal> {
     let judgement = stages.run("findings", || findings::judge(&facts));
     warnings.extend(judgement.warnings);
     let inputs = inputs(check, &part, &program, &view, layers, placement);
+    // Only a picture shows how the cutter runs.
+    let drawn = check.outputs.svg.is_some();
     Ok(Report {
         unit: program.unit,
         verdict: judgement.verdict,
@@ -70,13 +75,37 @@ pub fn check(check: &Check, stages: &Stages) -> Result<Report, Refusal> {
         inputs,
         warnings,
         drawing: findings::Drawing {
-            contour: part.contour.clone(),
+            contour: part.contour,
             keep,
             swept,
-            path: view.cutting.moves.iter().map(|m| m.segment).collect(),
-            rapids: rapids(&program),
+            path: if drawn { view.cutting.moves.iter().map(|m| m.segment).collect() } else { Vec::new() },
+            rapids: if drawn { rapids(&program) } else { Vec::new() },
         },
     })
+}
+
+/// Reads drawing and program beside one another. A program that states no unit is read again when the
+/// drawing's is known: what it says in that unit may differ.
+fn read_both(check: &Check, stages: &Stages) -> Result<(Reading<Drawing>, Reading<Program>), Refusal> {
+    let (drawing, first) = rayon::join(
+        || stages.run("read drawing", || read_drawing(&check.part, check.program.units)),
+        || {
+            stages.run("read program", || {
+                let bytes = files::read(&check.program.file)?;
+                let read = understand(&check.program, &bytes, None);
+                Ok::<_, Refusal>((bytes, read))
+            })
+        },
+    );
+    let drawing = drawing?;
+    let (bytes, read) = first?;
+    let stands = check.program.units.is_some() || read.as_ref().is_ok_and(|r| r.value.unit_stated);
+    let program = if stands {
+        read?
+    } else {
+        stages.run("read program again", || understand(&check.program, &bytes, drawing.value.unit))?
+    };
+    Ok((drawing, program))
 }
 
 /// Reads the drawing of a check. Lengths of the request are in `units`; when the drawing turns out to
@@ -110,14 +139,22 @@ pub fn read_program(
     request: &ProgramRequest,
     drawing_unit: Option<Unit>,
 ) -> Result<Reading<Program>, Refusal> {
-    let bytes = files::read(&request.file)?;
+    understand(request, &files::read(&request.file)?, drawing_unit)
+}
+
+/// The program written in `bytes`.
+fn understand(
+    request: &ProgramRequest,
+    bytes: &[u8],
+    drawing_unit: Option<Unit>,
+) -> Result<Reading<Program>, Refusal> {
     let options = ProgramOptions {
         unit: request.units.or(drawing_unit),
         target: request.units,
         arc_tolerance: request.arc_tolerance,
         block_delete: false,
     };
-    let mut reading = judge::read_program(&bytes, &request.file, request.format, &options)?;
+    let mut reading = judge::read_program(bytes, &request.file, request.format, &options)?;
     if !reading.value.unit_stated && request.units.is_none() {
         let place = Place::file(&request.file.name);
         let Some(unit) = drawing_unit else {
@@ -157,7 +194,7 @@ pub fn view(program: &Program, request: &ProgramRequest) -> Result<PlanView, Ref
 
 fn block_place(program: &Program, block: BlockId) -> Place {
     match program.blocks.get(block.0 as usize) {
-        Some(b) => Place::line(&program.file, b.line, &b.text),
+        Some(b) => Place::line(&program.file, b.line, b.text),
         None => Place::file(&program.file),
     }
 }

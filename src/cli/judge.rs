@@ -88,15 +88,21 @@ pub fn sweep(family: &DiscFamily, program: &Program) -> Result<SweptRegion, Refu
     })
 }
 
-/// The comparison of part and moves, with the regions cut out and left standing.
+/// A comparison, and what it was asked.
+pub struct Compared {
+    comparison: Comparison,
+    request: Request,
+}
+
+/// The comparison of part and moves; the regions are still to be found.
 pub fn compare(
     part: &Part,
-    (view, swept): (&PlanView, &SweptRegion),
+    view: &PlanView,
     program: &Program,
     limits: &Limits,
     (clear, only_visited): (ClearName, bool),
     stages: &Stages,
-) -> Comparison {
+) -> Compared {
     let part_box = part.contour.bounds();
     let all = view.cutting.bounds().map_or(part_box, |b| b.union(part_box));
     let tolerances = Tolerances::for_extent(extent(all));
@@ -113,8 +119,17 @@ pub fn compare(
         tolerances,
     };
     let families = (&view.cutting, &view.rapids);
-    let mut comparison = compare::compare_watched(part, families, &request, stages);
-    comparison.deviation = stages.run("deviation", || compare::deviation_summary(part, &view.cutting));
+    let comparison = compare::compare_watched(part, families, &request, stages);
+    Compared { comparison, request }
+}
+
+/// The comparison with the regions cut out and left standing, where there is anything to show.
+pub fn with_regions(
+    Compared { mut comparison, request }: Compared,
+    part: &Part,
+    (view, swept): (&PlanView, &SweptRegion),
+    stages: &Stages,
+) -> Comparison {
     if !(comparison.gouges.is_empty() && comparison.excesses.is_empty()) {
         // Swept edge and contour that agree within what both are known to are one line.
         let within = compare::figure_bound(part, &view.cutting, &request).max(swept.bound);

@@ -121,9 +121,10 @@ impl<'a> Follower<'a> {
     }
 
     fn is_open(&self, p: Point) -> bool {
-        self.walls.targets.nearest(p, None).is_some_and(|(k, _)| {
-            self.walls.of(p, k, self.walls.targets.feature_at(k, p)) == Where::Open
-        })
+        self.walls
+            .targets
+            .nearest(p, None)
+            .is_some_and(|(k, _)| self.walls.of(p, k, self.walls.targets.feature_at(k, p)) == Where::Open)
     }
 
     fn follow_move(&mut self, position: usize, segment: &Segment, radius: f64) {

@@ -260,18 +260,44 @@ pub fn compare_watched(
     request: &Request,
     watch: &dyn Watch,
 ) -> Comparison {
-    let mut out = Comparison::default();
     let walls = stage(watch, "index contour", || Walls::new(&part.contour));
     let bound = figure_bound(part, cutting, request);
-    stage(watch, "gouges and rapids", || {
-        cutter_past_contour(part, &walls, (cutting, rapids), request, &mut out);
-    });
-    let moves = stage(watch, "index moves", || {
-        Targets::new(cutting.moves.iter().map(|m| (m.segment, m.radius)))
-    });
-    if moves.is_empty() {
+    // Neither direction waits for the other; each is told apart and joined in one order.
+    let (mut out, (folds, reached)) = rayon::join(
+        || {
+            stage(watch, "gouges and rapids", || {
+                cutter_past_contour(part, &walls, (cutting, rapids), request)
+            })
+        },
+        || {
+            let passes = Passes::new(cutting);
+            let reach = request.gouge + bound;
+            let folds =
+                stage(watch, "folds", || folds::folds(cutting, &passes, &walls, reach, &request.tolerances));
+            (folds, not_reached(part, (&walls, &passes), cutting, request, watch))
+        },
+    );
+    let Some(reached) = reached else {
         out.never_visited = (0..part.contour.paths().len()).collect();
         return out;
+    };
+    Comparison { gouges: out.gouges, rapids: out.rapids, worst_gouge: out.worst_gouge, folds, ..reached }
+}
+
+/// Where the contour, and the area if asked for, are not reached; `None` when nothing cuts.
+fn not_reached(
+    part: &Part,
+    (walls, passes): (&Walls, &Passes),
+    cutting: &DiscFamily,
+    request: &Request,
+    watch: &dyn Watch,
+) -> Option<Comparison> {
+    let mut out = Comparison::default();
+    let bound = figure_bound(part, cutting, request);
+    let moves =
+        stage(watch, "index moves", || Targets::new(cutting.moves.iter().map(|m| (m.segment, m.radius))));
+    if moves.is_empty() {
+        return None;
     }
     let judge = Judge {
         excess: request.excess,
@@ -281,16 +307,11 @@ pub fn compare_watched(
         radius: moves.greatest_radius(),
         only_visited: request.only_visited,
     };
-    let passes = Passes::new(cutting);
-    out.folds = stage(watch, "folds", || {
-        folds::folds(cutting, &walls, request.gouge + bound, &request.tolerances)
-    });
-    let tracer = Tracer::new(&moves, &request.tolerances);
     let mut scanner = Scanner {
-        walls: &walls,
+        walls,
         moves: &moves,
-        passes: &passes,
-        tracer,
+        passes,
+        tracer: Tracer::new(&moves, &request.tolerances),
         limits: judge.clearances(),
         crest_from: part.allowance + bound,
         allowance: part.allowance,
@@ -299,10 +320,11 @@ pub fn compare_watched(
         excess::contour_not_reached(&part.contour, &mut scanner, &judge, &mut out);
     });
     if request.clear == Clear::Area {
-        stage(watch, "uncut area", || area_not_reached(part, (&walls, &moves), request, bound, &mut out));
+        stage(watch, "uncut area", || area_not_reached(part, (walls, &moves), request, bound, &mut out));
     }
     out.excesses.sort_by(|a, b| b.height.size.total_cmp(&a.height.size));
-    out
+    out.deviation = stage(watch, "deviation", || deviation::summary_of(part, &moves));
+    Some(out)
 }
 
 /// Uncut spots of the openings. A spot that holds the greatest excess of a stretch of contour, and is
@@ -362,8 +384,8 @@ fn cutter_past_contour(
     walls: &Walls,
     (cutting, rapids): (&DiscFamily, &DiscFamily),
     request: &Request,
-    out: &mut Comparison,
-) {
+) -> Comparison {
+    let mut out = Comparison::default();
     let lengths: Vec<(f64, bool)> =
         part.contour.paths().iter().map(|p| (p.length(), p.is_closed())).collect();
     let bound = figure_bound(part, cutting, request);
@@ -383,6 +405,7 @@ fn cutter_past_contour(
     let hit = follow(rapids, request.gouge.max(bound));
     out.rapids = hit.found.iter().map(|r| r.rapid(bound)).collect();
     out.rapids.sort_by(|a, b| b.depth.size.total_cmp(&a.depth.size));
+    out
 }
 
 #[cfg(test)]

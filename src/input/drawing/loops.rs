@@ -8,7 +8,9 @@
 //! ```
 
 use super::join::Gaps;
-use crate::geometry::{BoxIndex, Contour, Crossing, MeetingKind, Path, Point, Rect, Segment, Vec2, crossing};
+use crate::geometry::{
+    BoxIndex, Contour, Crossing, MeetingKind, Path, Point, Rect, Segment, Vec2, advancing, crossing,
+};
 use crate::input::{Place, Problem, Refusal};
 use crate::part::Origin;
 
@@ -135,24 +137,41 @@ fn lies_on(a: &Path, b: &Path, same: f64) -> bool {
 #[must_use]
 pub fn first_crossing(contour: &Contour) -> Option<(Point, usize, usize)> {
     let items = Items::new(contour);
-    let boxes: Vec<Rect> = items.segments.iter().map(|s| s.bounds().inflate(TOUCH, TOUCH)).collect();
+    let chunks = items.chunks();
+    let boxes: Vec<Rect> = chunks.iter().map(|c| c.around).collect();
     let index = BoxIndex::new(&boxes);
     let mut near = Vec::new();
-    for (i, window) in boxes.iter().enumerate() {
+    for (number, chunk) in chunks.iter().enumerate() {
         near.clear();
-        index.search(*window, |j| {
-            if j > i {
-                near.push(j);
+        index.search(chunk.around, |n| {
+            // Segments of one stretch do not cross one another.
+            if n > number && chunks[n].stretch != chunk.stretch {
+                near.push(n);
             }
         });
         near.sort_unstable();
-        for &j in &near {
-            if let Some(at) = items.crossing(i, j) {
-                return Some((at, items.path(i), items.path(j)));
+        for i in chunk.range.clone() {
+            for j in near.iter().flat_map(|&n| chunks[n].range.clone()) {
+                let at = items.meet(i, j).then(|| items.crossing(i, j)).flatten();
+                if let Some(at) = at {
+                    return Some((at, items.path(i), items.path(j)));
+                }
             }
         }
     }
     None
+}
+
+/// Segments in one chunk, at most.
+const CHUNK: usize = 16;
+
+/// Some segments of one path in a row that advance one way.
+struct Chunk {
+    range: std::ops::Range<usize>,
+    /// Box round them, with room for touching.
+    around: Rect,
+    /// Number of the stretch it belongs to.
+    stretch: usize,
 }
 
 /// Segments of a contour with their neighbours.
@@ -182,6 +201,35 @@ impl Items {
             }));
         }
         Self { segments, places }
+    }
+
+    /// The segments in chunks, in order.
+    fn chunks(&self) -> Vec<Chunk> {
+        let count = self.segments.len();
+        // Ways that are compared at a touch lie up to four touches apart.
+        let mut starts = advancing(self.segments.iter(), 4.0 * TOUCH);
+        // Two paths that meet end to end are two stretches all the same.
+        starts.extend((1..count).filter(|&i| self.path(i) != self.path(i - 1)));
+        starts.sort_unstable();
+        starts.dedup();
+        let mut chunks = Vec::new();
+        for (stretch, &from) in starts.iter().enumerate() {
+            let to = starts.get(stretch + 1).copied().unwrap_or(count);
+            for first in (from..to).step_by(CHUNK) {
+                let range = first..(first + CHUNK).min(to);
+                let boxes = self.segments.get(range.clone()).unwrap_or_default().iter().map(Segment::bounds);
+                let around = boxes.reduce(|a, b| a.union(b)).unwrap_or(Rect::ZERO).inflate(TOUCH, TOUCH);
+                chunks.push(Chunk { range, around, stretch });
+            }
+        }
+        chunks
+    }
+
+    /// Do the boxes of two segments meet, with room for touching?
+    fn meet(&self, i: usize, j: usize) -> bool {
+        let (Some(a), Some(b)) = (self.segments.get(i), self.segments.get(j)) else { return false };
+        let (a, b) = (a.bounds().inflate(TOUCH, TOUCH), b.bounds().inflate(TOUCH, TOUCH));
+        a.x0 <= b.x1 && b.x0 <= a.x1 && a.y0 <= b.y1 && b.y0 <= a.y1
     }
 
     fn path(&self, i: usize) -> usize {

@@ -51,7 +51,7 @@ pub(super) struct Piece {
 
 /// Lower envelopes along courses, one after the other: keeps its buffers and its last answer.
 pub(super) struct Tracer<'a> {
-    targets: &'a Targets,
+    targets: &'a Targets<'a>,
     tie: f64,
     slip: f64,
     pile: Vec<u32>,
@@ -73,7 +73,7 @@ impl Interval {
 }
 
 impl<'a> Tracer<'a> {
-    pub(super) const fn new(targets: &'a Targets, tolerances: &Tolerances) -> Self {
+    pub(super) const fn new(targets: &'a Targets<'a>, tolerances: &Tolerances) -> Self {
         let (tie, slip) = (tolerances.figure, tolerances.coincidence);
         Self { targets, tie, slip, pile: Vec::new(), last: None }
     }

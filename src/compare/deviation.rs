@@ -39,7 +39,7 @@ pub struct DeviationSummary {
 /// judged by its middle.
 #[must_use]
 pub fn deviation_summary(part: &Part, cutting: &DiscFamily) -> Option<DeviationSummary> {
-    summary_of(part, &Targets::new(cutting.moves.iter().map(|m| (m.segment, m.radius))))
+    summary_of(part, &Targets::new(cutting.moves.iter().map(|m| (&m.segment, m.radius))))
 }
 
 /// [`deviation_summary`] where the moves are indexed already.

@@ -38,7 +38,7 @@ pub(super) struct Reach {
 
 /// Follows moves against the contour.
 pub(super) struct Follower<'a> {
-    walls: &'a Walls,
+    walls: &'a Walls<'a>,
     tracer: Tracer<'a>,
     pieces: Vec<Piece>,
     /// Depth from which on a stretch is gathered.
@@ -59,7 +59,7 @@ struct Part {
 }
 
 impl<'a> Follower<'a> {
-    pub(super) fn new(walls: &'a Walls, tolerances: &Tolerances, threshold: f64, allowance: f64) -> Self {
+    pub(super) fn new(walls: &'a Walls<'a>, tolerances: &Tolerances, threshold: f64, allowance: f64) -> Self {
         Self {
             walls,
             tracer: Tracer::new(&walls.targets, tolerances),

@@ -295,7 +295,7 @@ fn not_reached(
     let mut out = Comparison::default();
     let bound = figure_bound(part, cutting, request);
     let moves =
-        stage(watch, "index moves", || Targets::new(cutting.moves.iter().map(|m| (m.segment, m.radius))));
+        stage(watch, "index moves", || Targets::new(cutting.moves.iter().map(|m| (&m.segment, m.radius))));
     if moves.is_empty() {
         return None;
     }

@@ -64,8 +64,8 @@ pub(super) struct Scan {
 
 /// The questions put to every path.
 pub(super) struct Scanner<'a> {
-    pub(super) walls: &'a Walls,
-    pub(super) moves: &'a Targets,
+    pub(super) walls: &'a Walls<'a>,
+    pub(super) moves: &'a Targets<'a>,
     pub(super) passes: &'a Passes,
     pub(super) tracer: Tracer<'a>,
     pub(super) limits: [f64; 2],

@@ -16,9 +16,9 @@ const STRAIGHT: f64 = 1e-9;
 
 /// The contour made ready for questions: its segments as targets, each knowing its path, its place
 /// on it and its neighbours. Segments without length are left out: they have no side.
-pub(super) struct Walls {
+pub(super) struct Walls<'a> {
     /// The segments as targets without radius.
-    pub(super) targets: Targets,
+    pub(super) targets: Targets<'a>,
     /// Position of each segment's path in the contour.
     path: Vec<u32>,
     /// Length of its path before each segment.
@@ -36,15 +36,15 @@ pub(super) enum Where {
     Open,
 }
 
-impl Walls {
-    pub(super) fn new(contour: &Contour) -> Self {
-        let mut segments: Vec<Segment> = Vec::new();
+impl<'a> Walls<'a> {
+    pub(super) fn new(contour: &'a Contour) -> Self {
+        let mut segments: Vec<&Segment> = Vec::new();
         let (mut paths, mut along, mut neighbours) = (Vec::new(), Vec::new(), Vec::new());
         for (position, path) in (0u32..).zip(contour.paths()) {
             let first = segments.len();
             let mut length = 0.0;
             for s in path.segments().iter().filter(|s| s.length() > 0.0) {
-                segments.push(*s);
+                segments.push(s);
                 paths.push(position);
                 along.push(length);
                 length += s.length();
@@ -85,7 +85,7 @@ impl Walls {
         self.turn_at(k, Feature::End)
     }
 
-    fn segment(&self, k: usize) -> &Segment {
+    fn segment(&self, k: usize) -> &'a Segment {
         self.targets.segment(k)
     }
 

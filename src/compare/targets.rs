@@ -21,8 +21,8 @@ pub(super) enum Feature {
 }
 
 /// Segments with radii, and an index over them.
-pub(super) struct Targets {
-    segments: Vec<Segment>,
+pub(super) struct Targets<'a> {
+    segments: Vec<&'a Segment>,
     radii: Vec<f64>,
     index: BoxIndex,
     greatest_radius: f64,
@@ -39,10 +39,10 @@ pub(super) struct Bounds {
     pub(super) law: Option<(Feature, Law)>,
 }
 
-impl Targets {
+impl<'a> Targets<'a> {
     /// Targets `segments`, each swept by a disc of the radius given.
-    pub(super) fn new(items: impl Iterator<Item = (Segment, f64)>) -> Self {
-        let (segments, radii): (Vec<_>, Vec<_>) = items.unzip();
+    pub(super) fn new(items: impl Iterator<Item = (&'a Segment, f64)>) -> Self {
+        let (segments, radii): (Vec<&Segment>, Vec<f64>) = items.unzip();
         let boxes: Vec<Rect> = segments
             .iter()
             .map(|s| {
@@ -50,9 +50,16 @@ impl Targets {
                 s.bounds().union_pt(s.start()).union_pt(s.end())
             })
             .collect();
-        let residual = segments.iter().map(residual).fold(0.0, f64::max);
+        let residual = segments.iter().map(|s| residual(s)).fold(0.0, f64::max);
         let greatest_radius = radii.iter().copied().fold(0.0, f64::max);
         Self { segments, radii, index: BoxIndex::new(&boxes), greatest_radius, residual }
+    }
+
+    /// Targets of a test, which keeps them to its end.
+    #[cfg(test)]
+    pub(super) fn of(items: impl Iterator<Item = (Segment, f64)>) -> Targets<'static> {
+        let kept: &'static [(Segment, f64)] = Box::leak(items.collect::<Vec<_>>().into_boxed_slice());
+        Targets::new(kept.iter().map(|(s, r)| (s, *r)))
     }
 
     pub(super) fn is_empty(&self) -> bool {
@@ -73,8 +80,8 @@ impl Targets {
         self.residual
     }
 
-    pub(super) fn segment(&self, k: usize) -> &Segment {
-        &self.segments[k]
+    pub(super) fn segment(&self, k: usize) -> &'a Segment {
+        self.segments[k]
     }
 
     pub(super) fn radius(&self, k: usize) -> f64 {
@@ -106,7 +113,7 @@ impl Targets {
     pub(super) fn least_from(&self, line: &Line, within: f64) -> Option<f64> {
         let own = Segment::Line(*line);
         let apart = |k: usize| {
-            let other = &self.segments[k];
+            let other = self.segments[k];
             let of_line = other.distance(line.start).min(other.distance(line.end));
             let of_other = own.distance(other.start()).min(own.distance(other.end()));
             let least = of_line.min(of_other);
@@ -143,7 +150,7 @@ impl Targets {
     /// taken without its ends: the whole line, the whole circle.
     pub(super) fn law(&self, k: usize, feature: Feature, course: &Course) -> Law {
         let less = self.radii[k];
-        match (feature, &self.segments[k]) {
+        match (feature, self.segments[k]) {
             (Feature::Start, s) => Law { wave: course.distance_to(s.start()), circle: 0.0, less },
             (Feature::End, s) => Law { wave: course.distance_to(s.end()), circle: 0.0, less },
             (Feature::Inside, Segment::Line(l)) => {
@@ -160,7 +167,7 @@ impl Targets {
     /// Which feature of target `k` is the nearest over the whole of [lo, hi]; `None` when it changes.
     /// A feature may be overrun by `slip`.
     fn feature_over(&self, k: usize, course: &Course, lo: f64, hi: f64, slip: f64) -> Option<Feature> {
-        match &self.segments[k] {
+        match self.segments[k] {
             Segment::Line(l) => {
                 let length = l.length();
                 if length <= 0.0 {
@@ -209,7 +216,7 @@ impl Targets {
     /// Places strictly inside (lo, hi) where the nearest feature of target `k` may change.
     pub(super) fn changes(&self, k: usize, course: &Course, lo: f64, hi: f64) -> Places {
         let mut out = Places::new();
-        match &self.segments[k] {
+        match self.segments[k] {
             Segment::Line(l) => {
                 let wave = course.component(l.tangent(), l.start);
                 wave.solve(0.0, lo, hi, &mut out);
@@ -239,7 +246,7 @@ impl Targets {
         let way = hi - lo;
         let whole = self.law(k, Feature::Inside, course).range(lo, hi).0;
         let low = whole.max(0.5 * (a + b - way));
-        let straight = matches!((course, &self.segments[k]), (Course::Line { .. }, Segment::Line(_)));
+        let straight = matches!((course, self.segments[k]), (Course::Line { .. }, Segment::Line(_)));
         // The distance from a convex set is convex along a line.
         let high = if straight { a.max(b) } else { 0.5 * (a + b + way) };
         Bounds { low, high, law: None }

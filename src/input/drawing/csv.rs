@@ -48,7 +48,7 @@ pub fn read_csv(text: &[u8], file: &str, options: &DrawingOptions) -> Result<Rea
         .into_iter()
         .map(|(path, line)| Strand {
             closed: path.is_closed(),
-            segments: path.segments().to_vec(),
+            segments: path.into_segments(),
             layer: None,
             place: Place { file: file.into(), line: Some(line), ..Place::default() },
         })

@@ -183,13 +183,15 @@ pub fn view(program: &Program, request: &ProgramRequest) -> Result<PlanView, Ref
     let level = request.level.unwrap_or(request.top);
     let seen = |level| plan(program, level, |tool| request.cutters.of(tool));
     let fault = |e| vec![plan_problem(program, e)];
-    let cutting = seen(level).map_err(fault)?.cutting;
-    if cutting.moves.is_empty() {
+    let mut view = seen(level).map_err(fault)?;
+    if view.cutting.moves.is_empty() {
         return Err(vec![nothing_cuts(program, level)]);
     }
-    // A rapid between the level and the top meets the part above the level.
-    let rapids = seen(request.top).map_err(fault)?.rapids;
-    Ok(PlanView { cutting, rapids })
+    if request.level.is_some() {
+        // A rapid between the level and the top meets the part above the level.
+        view.rapids = seen(request.top).map_err(fault)?.rapids;
+    }
+    Ok(view)
 }
 
 fn block_place(program: &Program, block: BlockId) -> Place {

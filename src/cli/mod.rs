@@ -14,6 +14,7 @@ mod job;
 mod judge;
 mod lay;
 mod output;
+mod pending;
 mod request;
 mod run;
 mod stages;

@@ -115,8 +115,13 @@ impl<'a> Targets<'a> {
         let apart = |k: usize| {
             let other = self.segments[k];
             let of_line = other.distance(line.start).min(other.distance(line.end));
-            let of_other = own.distance(other.start()).min(own.distance(other.end()));
-            let least = of_line.min(of_other);
+            let mut least = of_line.min(own.distance(other.start()));
+            // Where the next target starts there it is asked about that point itself: the point lies in
+            // its box.
+            let end = other.end();
+            if self.segments.get(k + 1).is_none_or(|next| next.start() != end) {
+                least = least.min(own.distance(end));
+            }
             match other {
                 Segment::Line(_) => least,
                 Segment::Arc(a) => least.min(other.distance(own.nearest(a.center()).at)),

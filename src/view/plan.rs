@@ -48,6 +48,7 @@ pub fn plan(
 ) -> Result<PlanView, PlanError> {
     let level = if program.says_z { level } else { f64::INFINITY };
     let mut view = PlanView::default();
+    view.cutting.moves.reserve(program.moves.len());
     let mut pieces = Vec::new();
     for (source, m) in (0u32..).zip(&program.moves) {
         if m.kind == MoveKind::Rapid && !program.says_z {
@@ -68,6 +69,7 @@ pub fn plan(
             source: MoveIndex(source),
         }));
     }
+    view.cutting.moves.shrink_to_fit();
     Ok(view)
 }
 

@@ -4,7 +4,7 @@
 use super::args::{ClearName, ProgramFormatName};
 use super::draft::Named;
 use super::stages::Stages;
-use crate::compare::{self, Clear, Comparison, Regions, Request};
+use crate::compare::{self, Clear, Comparison, Request, attach_regions};
 use crate::envelope::{self, Clearance, SweptRegion};
 use crate::findings::{Limits, Report};
 use crate::geometry::Rect;
@@ -134,7 +134,9 @@ pub fn with_regions(
         // Swept edge and contour that agree within what both are known to are one line.
         let within = compare::figure_bound(part, &view.cutting, &request).max(swept.bound);
         stages.run("regions", || {
-            Regions::new(part, swept, &Clearance::new(&view.cutting), within).attach(&mut comparison);
+            let radius = view.cutting.moves.iter().map(|m| m.radius).fold(0.0, f64::max);
+            let clearance = Clearance::new(&view.cutting);
+            attach_regions(part, (swept, &clearance), (within, radius), &mut comparison);
         });
     }
     comparison

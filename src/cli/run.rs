@@ -23,8 +23,8 @@ pub fn run(cli: &Cli) -> Exit {
         Command::Envelope(args) => args.running.threads,
         Command::Inspect(_) | Command::Schema { .. } => None,
     };
-    if let Err(problem) = hire(threads.unwrap_or(0)) {
-        output::complain(&[problem]);
+    if let Err(problems) = hire(threads.unwrap_or(0)) {
+        output::complain(&problems);
         return Exit::NotJudged;
     }
     match &cli.command {
@@ -44,15 +44,15 @@ pub fn run(cli: &Cli) -> Exit {
 }
 
 /// Starts the threads that do the work, 0 for as many as there are cores.
-fn hire(threads: u16) -> Result<(), Problem> {
+fn hire(threads: u16) -> Result<(), Refusal> {
     let pool = rayon::ThreadPoolBuilder::new().num_threads(usize::from(threads));
     pool.build_global().map_err(|e| {
-        Problem::error(
+        vec![Problem::error(
             command_line(),
             format!("the threads for the work cannot be started: {e}"),
             "",
             "ask for fewer with --threads, or close other programs",
-        )
+        )]
     })
 }
 

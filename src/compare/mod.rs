@@ -20,7 +20,7 @@ mod targets;
 mod working_side;
 
 pub use deviation::{DeviationSummary, deviation_summary};
-pub use regions::Regions;
+pub use regions::{Regions, attach_regions};
 pub use working_side::{WorkingSide, working_side};
 
 use crate::geometry::{Path, Point, Segment};

@@ -29,6 +29,15 @@ impl Unit {
             Self::Inch => "in",
         }
     }
+
+    /// Its name in a sentence: `millimetres` or `inches`.
+    #[must_use]
+    pub const fn name(self) -> &'static str {
+        match self {
+            Self::Millimetre => "millimetres",
+            Self::Inch => "inches",
+        }
+    }
 }
 
 /// A point in space.

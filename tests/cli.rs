@@ -226,7 +226,7 @@ fn the_side_that_is_material_is_found_said_and_refused_when_both_are_cut() {
 #[test]
 fn a_program_that_never_goes_below_the_top_is_refused_with_its_lowest_height() {
     let checked = run(&["check", &example("good.toml"), "--top", "-10"]);
-    assert_refused(&checked, "the lowest feed move ends at Z-6.000");
+    assert_refused(&checked, "the lowest tip of a feed move is at Z-6.000");
     let folder = folder(&[("square.csv", SQUARE), ("air.nc", "G21 G90\nG0 X1 Y1\nG0 X5\nM30\n")]);
     let (part, nc) = (within(&folder, "square.csv"), within(&folder, "air.nc"));
     assert_refused(&run(&["check", "--part", &part, "--program", &nc, "-d", "4"]), "no cutting move");
@@ -236,7 +236,7 @@ fn a_program_that_never_goes_below_the_top_is_refused_with_its_lowest_height() {
 fn a_cutter_wider_than_any_opening_is_warned_of() {
     let checked = run(&["check", &example("pocket.toml"), "--diameter", "41"]);
     assert_eq!(checked.status, 1);
-    assert!(checked.out.contains("wider than any opening"), "{}", checked.out);
+    assert!(checked.out.contains("wider than every opening"), "{}", checked.out);
 }
 
 #[test]

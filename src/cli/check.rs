@@ -8,8 +8,8 @@ use super::judge;
 use super::lay::{Laid, lay};
 use super::request::{Check, LimitsRequest, PartRequest, ProgramRequest};
 use super::stages::Stages;
-use crate::compare::{WorkingSide, working_side};
-use crate::findings::{self, Facts, Inputs, Limits, Report, SweptSummary, Tool};
+use crate::compare::{Comparison, WorkingSide, working_side};
+use crate::findings::{self, Facts, Inputs, Judgement, Limits, Report, Severity, SweptSummary, Tool};
 use crate::geometry::{Contour, Point, Segment};
 use crate::input::drawing::{Drawing, DrawingOptions};
 use crate::input::program::ProgramOptions;
@@ -39,7 +39,6 @@ pub fn check(check: &Check, stages: &Stages) -> Result<Report, Refusal> {
     };
     let part = stages.run("part", || Part::new(contour, keep, check.part.allowance, origins));
     let part = part.map_err(|e| vec![refused_part(&check.part.file, &e.to_string())])?;
-    warnings.extend(too_wide(&part, &view.cutting, &check.part.file, program.unit));
     let (limits, more) = limits(check.limits, program.unit, &check.program.file);
     warnings.extend(more);
     let asked = (check.clear, check.only_visited);
@@ -61,6 +60,9 @@ pub fn check(check: &Check, stages: &Stages) -> Result<Report, Refusal> {
         top: check.program.top,
     };
     let judgement = stages.run("findings", || findings::judge(&facts));
+    if check.only_visited && nothing_judged(&part, &comparison, &judgement) {
+        return Err(vec![lies_elsewhere(judgement.warnings, &check.part.file)]);
+    }
     warnings.extend(judgement.warnings);
     let inputs = inputs(check, &part, &program, &view, layers, placement);
     // Only a picture shows how the cutter runs.
@@ -106,6 +108,27 @@ fn read_both(check: &Check, stages: &Stages) -> Result<(Reading<Drawing>, Readin
         stages.run("read program again", || understand(&check.program, &bytes, drawing.value.unit))?
     };
     Ok((drawing, program))
+}
+
+/// Every loop was left out as one that the program never comes near, and no rapid meets the part.
+fn nothing_judged(part: &Part, comparison: &Comparison, judgement: &Judgement) -> bool {
+    comparison.never_visited.len() >= part.contour.paths().len()
+        && comparison.excesses.is_empty()
+        && judgement.findings.iter().all(|f| f.severity == Severity::Note)
+}
+
+/// The first warning about the whole says how drawing and program miss one another.
+fn lies_elsewhere(warnings: Vec<Problem>, drawing: &Named) -> Problem {
+    let generic = || {
+        Problem::error(
+            Place::file(&drawing.name),
+            "the program comes near none of the drawing's loops and chains, so nothing can be judged",
+            "a program that cuts this part",
+            "check that drawing and program belong together, and where the drawing lies (--shift, --turn, --mirror)",
+        )
+    };
+    let first = warnings.into_iter().next();
+    first.map_or_else(generic, |w| Problem { severity: crate::input::Severity::Error, ..w })
 }
 
 /// Reads the drawing of a check. Lengths of the request are in `units`; when the drawing turns out to
@@ -156,7 +179,7 @@ fn understand(
     };
     let mut reading = judge::read_program(bytes, &request.file, request.format, &options)?;
     if !reading.value.unit_stated && request.units.is_none() {
-        let place = Place::file(&request.file.name);
+        let place = Place::file(request.file.shown());
         let Some(unit) = drawing_unit else {
             return Err(vec![Problem::error(
                 place,
@@ -185,7 +208,7 @@ pub fn view(program: &Program, request: &ProgramRequest) -> Result<PlanView, Ref
     let fault = |e| vec![plan_problem(program, e)];
     let mut view = seen(level).map_err(fault)?;
     if view.cutting.moves.is_empty() {
-        return Err(vec![nothing_cuts(program, level)]);
+        return Err(vec![nothing_cuts(program, level, request.top)]);
     }
     if request.level.is_some() {
         // A rapid between the level and the top meets the part above the level.
@@ -224,7 +247,7 @@ fn plan_problem(program: &Program, error: PlanError) -> Problem {
     }
 }
 
-fn nothing_cuts(program: &Program, level: f64) -> Problem {
+fn nothing_cuts(program: &Program, level: f64, top: f64) -> Problem {
     let feeds = || program.moves.iter().filter(|m| m.kind == MoveKind::Feed);
     let lowest = feeds().map(|m| m.motion.start().z.min(m.motion.end().z)).reduce(f64::min);
     let place = Place::file(&program.file);
@@ -235,9 +258,19 @@ fn nothing_cuts(program: &Program, level: f64) -> Problem {
             "moves with G1, G2 or G3",
             "check that this is the right file and that it is complete",
         ),
+        Some(z) if level < top => Problem::error(
+            place,
+            format!(
+                "no cutting move goes below the level Z{level}: the lowest tip of a feed move is at Z{z:.3}"
+            ),
+            "a tip below the height at which to look",
+            format!("look higher up, above Z{z:.3}, with --level Z"),
+        ),
         Some(z) => Problem::error(
             place,
-            format!("no cutting move goes below Z{level}: the lowest feed move ends at Z{z:.3}"),
+            format!(
+                "no cutting move goes below the part's top, Z{top}: the lowest tip of a feed move is at Z{z:.3}"
+            ),
             "a tip below the part's top",
             "say where the top of the part is with --top Z (and the height to look at with --level Z)",
         ),
@@ -324,28 +357,6 @@ fn refused_part(drawing: &Named, what: &str) -> Problem {
         "",
         "run sweptedge inspect on the drawing to see its loops and layers, then choose with --layer or --keep",
     )
-}
-
-/// A warning when the cutter cannot stand in any opening of a pocket. By the openings' boxes, so it
-/// never warns without reason; a narrow slanted slot shows in the findings.
-fn too_wide(part: &Part, cutting: &DiscFamily, drawing: &Named, unit: Unit) -> Option<Problem> {
-    if part.keep != Keep::Outside {
-        return None;
-    }
-    let openings = part.contour.paths().iter().filter(|p| p.signed_area() < 0.0);
-    let widest = openings.map(|p| p.bounds().width().min(p.bounds().height())).reduce(f64::max)?;
-    let smallest = cutting.moves.iter().map(|m| 2.0 * m.radius).reduce(f64::min)?;
-    (smallest > widest).then(|| {
-        Problem::warning(
-            Place::file(&drawing.name),
-            format!(
-                "the cutter ({smallest} {u}) is wider than any opening of the part ({widest:.3} {u})",
-                u = unit.sign()
-            ),
-            "",
-            "take a smaller cutter, or check units and --keep",
-        )
-    })
 }
 
 /// Limits for acceptance; what was not said is assumed, and said.

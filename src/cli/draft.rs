@@ -9,6 +9,7 @@ use super::args::{
     ProgramFormatName, UnitName,
 };
 use crate::input::{Place, Problem};
+use crate::tolerance::GREATEST_COORDINATE;
 
 /// A file: how the user named it, and where it is.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -25,6 +26,11 @@ impl Named {
         let name = path.display().to_string();
         let path = if name == "-" { path.to_path_buf() } else { folder.join(path) };
         Self { name, path }
+    }
+
+    /// The name of an input as a person reads it.
+    pub fn shown(&self) -> &str {
+        if self.is_standard() { "standard input" } else { &self.name }
     }
 
     /// Standard input or output?
@@ -129,6 +135,9 @@ impl Rule {
     /// What is wrong with `value`, which stands at `place` under `name`; `None` when nothing is.
     pub fn broken(self, name: &str, value: f64, place: &Place) -> Option<Problem> {
         let (fine, expected) = match self {
+            _ if value.is_finite() && value.abs() > GREATEST_COORDINATE => {
+                (false, "a number up to 1e9 either way")
+            }
             Self::Positive => (value > 0.0, "a length greater than zero"),
             Self::NotNegative => (value >= 0.0, "a length of zero or more"),
             Self::Any => (true, "a finite number"),

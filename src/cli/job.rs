@@ -53,7 +53,11 @@ pub fn read(bytes: &[u8], file: &str, folder: &Path) -> Result<Draft, Refusal> {
             super::table::place(file, text, span),
             format!("this is no TOML: {}", e.message()),
             "lines of the form key = value under [section] headings",
-            "correct this line; names and words stand in double quotes, numbers without",
+            if Path::new(file).extension().is_some_and(|e| e.eq_ignore_ascii_case("toml")) {
+                "correct this line; names and words stand in double quotes, numbers without"
+            } else {
+                "give a job file here; a program goes with --program, a drawing with --part"
+            },
         )]
     })?;
     let top = Table::new(document.get_ref(), "", file, text);

@@ -71,7 +71,7 @@ pub fn read_program(
     options: &ProgramOptions,
 ) -> Result<Reading<Program>, Refusal> {
     match format {
-        ProgramFormatName::Iso => read_iso(bytes, &file.name, options),
+        ProgramFormatName::Iso => read_iso(bytes, file.shown(), options),
     }
 }
 
@@ -147,9 +147,9 @@ fn extent(b: Rect) -> f64 {
     [b.x0, b.y0, b.x1, b.y1].into_iter().fold(0.0, |a, v| a.max(v.abs()))
 }
 
-pub fn text(report: &Report, colored: bool) -> String {
+pub fn text(report: &Report, width: usize, colored: bool) -> String {
     let style = if colored { text::Style::Colour } else { text::Style::Plain };
-    text::render(report, text::DEFAULT_WIDTH, style)
+    text::render(report, width, style)
 }
 
 /// What a renderer could not write down.

@@ -39,7 +39,7 @@ pub fn lay(drawing: Drawing, unit: Unit, request: &PartRequest) -> Result<Laid, 
             let change = format!("converted from {} to {}", own.sign(), unit.sign());
             warnings.push(Problem::warning(
                 place.clone(),
-                format!("the drawing is in {}, the program in {}", own.sign(), unit.sign()),
+                format!("the drawing is in {}, the program in {}", own.name(), unit.name()),
                 "",
                 format!("nothing, if both are right: the drawing was {change} (1 in = 25.4 mm)"),
             ));

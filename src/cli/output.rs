@@ -5,11 +5,14 @@ use std::fs;
 use std::io::{ErrorKind, Write};
 use std::path::{Path, PathBuf};
 
+use anstream::{AutoStream, ColorChoice};
 use tempfile::NamedTempFile;
 
+use super::args::ColorWhen;
 use super::draft::Named;
 use super::pending::Pending;
 use crate::input::{Place, Problem, Refusal};
+use crate::report::text::DEFAULT_WIDTH;
 
 /// Bytes and where they go.
 #[derive(Clone, Debug)]
@@ -67,12 +70,62 @@ pub fn to_standard_output(bytes: &[u8]) -> Result<(), Refusal> {
     }
 }
 
+/// Widest text on a terminal: longer lines are hard to read.
+const WIDEST: u16 = 100;
+
+/// Width of the text on standard output: a terminal's up to 100, else that of the classic terminal.
+pub fn width() -> usize {
+    fitted(terminal_size::terminal_size_of(std::io::stdout()).map(|size| size.0.0))
+}
+
+/// `None`: no terminal. A terminal that does not know its width says 0.
+fn fitted(terminal: Option<u16>) -> usize {
+    terminal.filter(|&w| w > 0).map_or(DEFAULT_WIDTH, |w| usize::from(w.min(WIDEST)))
+}
+
+/// Colour on a terminal only, unless the user or the environment (NO_COLOR, CLICOLOR, TERM) says otherwise.
+pub fn colored(when: ColorWhen) -> bool {
+    match when {
+        ColorWhen::Always => true,
+        ColorWhen::Never => false,
+        ColorWhen::Auto => AutoStream::choice(&std::io::stdout()) != ColorChoice::Never,
+    }
+}
+
 /// Says problems on standard error. What cannot be said there cannot be said at all.
 pub fn complain(problems: &[Problem]) {
     let mut out = std::io::stderr().lock();
+    // In a file or a script's log one sentence is one line.
+    let width = terminal_size::terminal_size_of(&out).map(|size| fitted(Some(size.0.0)));
     for problem in problems {
-        let _ = writeln!(out, "{problem}");
+        let text = problem.to_string();
+        let _ = match width {
+            Some(width) => writeln!(out, "{}", wrapped(&text, width)),
+            None => writeln!(out, "{text}"),
+        };
     }
+}
+
+/// Breaks lines at blanks so that none is wider than `width`, what is broken off indented by four.
+/// Lines of a file (they follow `  | `) stay whole, for a mark stands under them.
+fn wrapped(text: &str, width: usize) -> String {
+    let mut lines = Vec::new();
+    for line in text.lines() {
+        let mut rest = line;
+        let mut indent = "";
+        while !line.starts_with("  | ") && indent.len() + rest.chars().count() > width {
+            let most =
+                rest.char_indices().nth(width.saturating_sub(indent.len())).map_or(rest.len(), |c| c.0);
+            let first_word = rest.len() - rest.trim_start().len();
+            let blank = |(at, c): &(usize, char)| *c == ' ' && *at <= most && *at > first_word;
+            let Some((at, _)) = rest.char_indices().rfind(blank) else { break };
+            let (head, tail) = rest.split_at(at);
+            lines.push(format!("{indent}{head}"));
+            (rest, indent) = (tail.trim_start(), "    ");
+        }
+        lines.push(format!("{indent}{rest}"));
+    }
+    lines.join("\n")
 }
 
 fn prepare(file: &Rendered) -> std::io::Result<Waiting> {
@@ -153,4 +206,29 @@ fn unwritable(to: &Named, error: &std::io::Error) -> Problem {
         _ => why.to_owned(),
     };
     Problem::error(Place::file(&to.name), format!("the output cannot be written: {said}"), "", help)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn text_fills_a_terminal_up_to_100_and_80_elsewhere() {
+        let widths = [None, Some(0), Some(60), Some(100), Some(250)].map(fitted);
+        assert_eq!(widths, [80, 80, 60, 100, 100]);
+    }
+
+    #[test]
+    fn a_long_sentence_is_broken_at_blanks_and_a_line_of_the_file_is_not() {
+        let text = "error: one two three four\n  | G1 X1 Y2 and so on for long\n  to do: unbreakableword";
+        let expected =
+            "error: one two\n    three four\n  | G1 X1 Y2 and so on for long\n  to do:\n    unbreakableword";
+        assert_eq!(wrapped(text, 15), expected);
+        assert_eq!(wrapped("", 15), "");
+        // Letters of several bytes at the edge.
+        assert_eq!(
+            wrapped("\u{e4}\u{e4}\u{e4}\u{e4} \u{f6}\u{f6}", 5),
+            "\u{e4}\u{e4}\u{e4}\u{e4}\n    \u{f6}\u{f6}"
+        );
+    }
 }

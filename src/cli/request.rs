@@ -137,6 +137,14 @@ fn numbers(draft: &Draft, place: &Place) -> Vec<Problem> {
         ("the turn", draft.turn, Rule::Any),
         ("the shift", Some(dx + dy), Rule::Any),
     ];
+    let limits = [draft.gouge, draft.excess, draft.cusp];
+    if limits.iter().all(|l| l.is_some() && *l == draft.gouge)
+        && let Some(one) = draft.gouge
+        && let Some(problem) = Rule::NotNegative.broken("the tolerance", one, place)
+    {
+        // One word set all three: one problem.
+        return vec![problem];
+    }
     let asked = asked.into_iter().filter_map(|(n, v, r)| r.broken(n, v?, place));
     asked.chain(diameters.iter().filter_map(|d| Rule::Positive.broken("the diameter", *d, place))).collect()
 }

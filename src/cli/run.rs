@@ -1,9 +1,8 @@
 //! Carries out what was asked, and turns the outcome into an exit status.
 
-use std::io::IsTerminal;
 use std::path::{Path, PathBuf};
 
-use super::args::{CheckArgs, Cli, ColorWhen, Command, EnvelopeArgs, SchemaName};
+use super::args::{CheckArgs, Cli, Command, EnvelopeArgs, SchemaName};
 use super::check;
 use super::draft::{Draft, Named, command_line};
 use super::exit::Exit;
@@ -102,7 +101,8 @@ fn judged(request: &Check, args: &CheckArgs, titled: bool) -> Result<Exit, Refus
         if titled {
             text = format!("== {} ==\n", request.name);
         }
-        text.push_str(&stages.run("write text", || judge::text(&report, colored(args.color))));
+        let (width, colored) = (output::width(), output::colored(args.color));
+        text.push_str(&stages.run("write text", || judge::text(&report, width, colored)));
         if titled {
             text.push('\n');
         }
@@ -130,19 +130,6 @@ fn render(report: &Report, outputs: &Outputs, stages: &Stages) -> Result<Vec<Ren
     add("write SVG", &outputs.svg, &|| Ok(svg::render(report).into_bytes()))?;
     add("write DXF", &outputs.dxf, &|| Ok(dxf::render(&report.drawing.swept, report.unit).into_bytes()))?;
     Ok(files)
-}
-
-/// Colour on a terminal only, unless the user or NO_COLOR (no-color.org) says otherwise.
-fn colored(when: ColorWhen) -> bool {
-    match when {
-        ColorWhen::Always => true,
-        ColorWhen::Never => false,
-        ColorWhen::Auto => {
-            let refused = std::env::var_os("NO_COLOR").is_some_and(|v| !v.is_empty());
-            let dumb = std::env::var_os("TERM").is_some_and(|v| v == "dumb");
-            !refused && !dumb && std::io::stdout().is_terminal()
-        }
-    }
 }
 
 fn run_envelope(args: &EnvelopeArgs) -> Result<(), Refusal> {

@@ -22,9 +22,10 @@ pub struct Table<'a> {
     problems: Rc<RefCell<Vec<Problem>>>,
 }
 
-/// Line, column and excerpt of the bytes `span` of `text`.
+/// Line, column and excerpt of the bytes `span` of `text`. What is missing at the end of the file is
+/// missed behind its last word, not on a line that is not there.
 pub fn place(file: &str, text: &str, span: Range<usize>) -> Place {
-    let before = text.get(..span.start).unwrap_or(text);
+    let before = text.get(..span.start.min(text.trim_end().len())).unwrap_or(text);
     let start = before.rfind('\n').map_or(0, |i| i + 1);
     let line = before.matches('\n').count() + 1;
     let excerpt = text.get(start..).unwrap_or("").lines().next().unwrap_or("");

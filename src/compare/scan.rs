@@ -258,15 +258,18 @@ impl Scanner<'_> {
         !turns && !tight(before) && !tight(after)
     }
 
-    /// The two moves, when they do not follow one another.
+    /// The two moves, when they do not follow one another and their cuts meet: between two passes that
+    /// stand farther apart than both cutters reach no crest is left but a wall.
     fn crest(&self, before: &Link, after: &Link, at: Point) -> Option<(usize, usize)> {
         let (a, b) = (before.piece.target, after.piece.target);
         let place = |k: usize| {
             let near = self.moves.segment(k).nearest(at);
-            ((k, near.t * self.moves.segment(k).length()), near.distance)
+            ((k, near.t * self.moves.segment(k).length()), near)
         };
-        let ((a_place, rho), (b_place, _)) = (place(a), place(b));
-        (a != b && !self.passes.follow(a_place, b_place, rho)).then_some((a.min(b), a.max(b)))
+        let ((a_place, a_near), (b_place, b_near)) = (place(a), place(b));
+        let meet = (a_near.at - b_near.at).hypot() <= self.moves.radius(a) + self.moves.radius(b);
+        let apart = a != b && !self.passes.follow(a_place, b_place, a_near.distance);
+        (meet && apart).then_some((a.min(b), a.max(b)))
     }
 
     /// The joint over the start of a loop, or the two ends of a chain.

@@ -1,5 +1,6 @@
 //! The swept region: what the moving disc has covered, by its boundary.
 
+use crate::geometry::exchange::{Chorded, to_polygons};
 use crate::geometry::{Rect, Segment};
 
 /// A piece of the swept edge.
@@ -63,6 +64,17 @@ impl SweptRegion {
     #[must_use]
     pub fn perimeter(&self) -> f64 {
         self.loops.iter().map(EdgeLoop::length).sum()
+    }
+
+    /// The region as polygons for a general polygon library, arcs by chords within `sagitta` of them; the
+    /// bound on the whole adds this region's own.
+    #[must_use]
+    pub fn to_polygons(&self, sagitta: f64) -> Chorded {
+        let loops: Vec<Vec<Segment>> =
+            self.loops.iter().map(|l| l.pieces.iter().map(|p| p.segment).collect()).collect();
+        let mut chorded = to_polygons(loops.iter().map(Vec::as_slice), sagitta);
+        chorded.bound += self.bound;
+        chorded
     }
 
     /// All pieces of all loops.

@@ -7,10 +7,12 @@
 //! | never-visited | the comparison lists the whole path as unvisited |
 //! | missed-pass (cusp) | the comparison found a crest between two passes no farther apart than the cutter is wide |
 //! | fold-left-in-path, tight-turn | a gouge by moves of a fold, no farther from it than the loop is wide, and on the inner side of a tight turn |
+//! | arc-wrong-way | the worst move of a gouge is an arc that would clear the part, and join its neighbours more smoothly, if it turned the other way |
 //! | inside-corner | the contour's largest touching disc there is smaller than the cutter, and what a cutter must leave there explains the height |
-//! | chords-too-long | the worst move is one of at least three like chords, the contour there is curved, and their sagitta is 0.7 to 2.2 times the size |
-//! | entry-or-exit | a gouge by the first or last move of a cut; an excess no longer than two diameters whose nearest point of the path is the end of a cut |
+//! | chords-too-long | the worst move is one of at least three like chords, the contour there is curved, and their sagitta is 0.7 to 2.2 times the size; or one straight move whose ends keep their distance from a wall that is an arc |
+//! | entry-or-exit | a gouge by the first or last move of a cut; an excess no longer than two diameters whose nearest point of the path is the end of a cut; a crest between the first moves of a cut and its last ones |
 //! | missed-pass | no move runs alongside within a radius |
+//! | path-off-contour | a pass runs alongside the wall, or ends before it, less than a radius off its place |
 //! | unknown | none of these |
 
 use std::collections::HashSet;
@@ -34,7 +36,7 @@ const SAME: f64 = 0.15;
 const LONG_STRETCH: f64 = 0.25;
 
 /// A pass runs alongside when it is parallel to the wall within about 20 degrees.
-const ALONGSIDE: f64 = 0.94;
+pub(super) const ALONGSIDE: f64 = 0.94;
 
 /// What is judged, with what makes questions about it cheap.
 pub(super) struct Scene<'a> {
@@ -181,11 +183,17 @@ impl<'a> Scene<'a> {
         };
         draft.diagnosis = self
             .constant(&draft)
+            .or_else(|| self.turned_wrong_way(gouge))
             .or_else(|| self.fold_behind(gouge))
             .or_else(|| self.chords_behind(&draft))
             .or_else(|| self.entry_too_deep(gouge))
             .or_else(|| self.too_narrow(&draft))
             .unwrap_or(Diagnosis::Unknown);
+        if let (Diagnosis::Unknown, Some((near, by))) = (draft.diagnosis, self.too_near(&draft, gouge.moves))
+        {
+            draft.diagnosis = near;
+            draft.culprits = vec![(gouge.depth.size, by)];
+        }
         draft
     }
 
@@ -230,7 +238,9 @@ impl<'a> Scene<'a> {
         if self.is_unvisited(excess) {
             return Some(Diagnosis::NeverVisited);
         }
-        Some(Diagnosis::Crest { step: self.crest_step(excess)? })
+        let step = self.crest_step(excess)?;
+        let gap = excess.crest.and_then(|c| self.gap(c.moves));
+        Some(gap.unwrap_or(Diagnosis::Crest { step }))
     }
 
     /// Distance of the two passes beside a crest. `None` where there is no crest, or where the passes
@@ -281,7 +291,7 @@ impl<'a> Scene<'a> {
     }
 
     fn chords_behind(&self, draft: &Draft) -> Option<Diagnosis> {
-        let chords = self.cuts.chords(draft.worst_move())?;
+        let Some(chords) = self.cuts.chords(draft.worst_move()) else { return self.one_chord(draft) };
         let i = self.walls.locate(draft.at, draft.contour.map(|c| c.path))?;
         let curved = match self.walls.segment(i)? {
             Segment::Arc(_) => true,
@@ -289,6 +299,15 @@ impl<'a> Scene<'a> {
         };
         let ratio = chords.sagitta() / draft.figure.size;
         (curved && (0.7..=2.2).contains(&ratio)).then_some(Diagnosis::Chords(chords))
+    }
+
+    /// A crest that stays between the beginning and the end of one cut: they should overlap.
+    fn gap(&self, crest: (usize, usize)) -> Option<Diagnosis> {
+        let (first, last) = (crest.0.min(crest.1), crest.0.max(crest.1));
+        let run = self.cuts.run(first)?;
+        let opens = first <= run.first.saturating_add(1);
+        let closes = last <= run.last && last.saturating_add(1) >= run.last;
+        (opens && closes && last - first > 2).then_some(Diagnosis::Gap { first, last })
     }
 
     fn entry_too_deep(&self, gouge: &Gouge) -> Option<Diagnosis> {
@@ -332,7 +351,7 @@ impl<'a> Scene<'a> {
         };
         let along = wall.tangent_at(wall.nearest(draft.at).t).dot(pass.tangent_at(near.t)).abs();
         if draft.figure.size < draft.radius && along >= ALONGSIDE {
-            Diagnosis::Unknown
+            Diagnosis::OffPath
         } else {
             Diagnosis::NoPass { distance: near.distance }
         }

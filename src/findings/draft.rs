@@ -40,6 +40,14 @@ pub(super) enum Diagnosis {
     Rapid,
     /// A fold told as a note.
     FoldNote { kind: FoldKind, radius: f64 },
+    /// An arc turns left (`left`) where it should turn right, or the reverse.
+    WrongWay { left: bool },
+    /// A pass, or an end of one, too near to the wall or too far from it.
+    OffPath,
+    /// The path turns in a sharp corner where an arc of this radius would follow the fillet of the wall.
+    SharpTurn { radius: f64 },
+    /// A cut begins and ends without meeting its own beginning.
+    Gap { first: usize, last: usize },
     /// Geometry names no cause.
     Unknown,
 }
@@ -56,8 +64,10 @@ impl Diagnosis {
             Self::Chords(_) => Cause::ChordsTooLong,
             Self::Crest { .. } | Self::NoPass { .. } | Self::Spot => Cause::MissedPass,
             Self::NeverVisited => Cause::NeverVisited,
-            Self::EntryTooDeep { .. } | Self::CutTooShort { .. } => Cause::EntryOrExit,
+            Self::EntryTooDeep { .. } | Self::CutTooShort { .. } | Self::Gap { .. } => Cause::EntryOrExit,
             Self::Rapid => Cause::RapidThroughPart,
+            Self::WrongWay { .. } => Cause::ArcWrongWay,
+            Self::OffPath | Self::SharpTurn { .. } => Cause::PathOffContour,
             Self::Unknown => Cause::Unknown,
         }
     }

@@ -162,6 +162,11 @@ impl<'a> Cuts<'a> {
         self.block(i).map(|b| b.line)
     }
 
+    /// Text of the block behind move `i`.
+    pub(super) fn text(&self, i: usize) -> Option<String> {
+        self.block(i).map(|b| b.text)
+    }
+
     fn block(&self, i: usize) -> Option<BlockRef> {
         let source = self.moves.get(i)?.source;
         let commanded = self.program.moves.get(usize::try_from(source.0).ok()?)?;

@@ -76,6 +76,10 @@ pub enum Cause {
     RapidThroughPart,
     /// The path turns more tightly than the cutter's radius.
     TightTurn,
+    /// The path does not keep the cutter's radius from the contour.
+    PathOffContour,
+    /// An arc turns the wrong way: G2 in place of G3, or the reverse.
+    ArcWrongWay,
     /// None that geometry could name.
     Unknown,
 }
@@ -94,6 +98,8 @@ impl Cause {
             Self::EntryOrExit => "entry-or-exit",
             Self::RapidThroughPart => "rapid-through-part",
             Self::TightTurn => "tight-turn",
+            Self::PathOffContour => "path-off-contour",
+            Self::ArcWrongWay => "arc-wrong-way",
             Self::Unknown => "unknown",
         }
     }

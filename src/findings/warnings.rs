@@ -24,9 +24,11 @@ pub(super) fn warnings(scene: &Scene<'_>) -> Vec<Problem> {
             out.push(problem);
         } else {
             out.extend(elsewhere(scene, part, path));
+            out.extend(wrong_side(scene));
         }
     }
     out.extend(wider_than_openings(scene));
+    out.extend(allowance_cut(scene));
     out.extend(left_out(scene));
     out
 }
@@ -42,7 +44,8 @@ fn box_text(b: Rect, unit: Unit) -> String {
 /// Are the contour and the path as large as one in inches and one in millimetres would be?
 fn other_unit(scene: &Scene<'_>, part: Rect, path: Rect) -> Option<Problem> {
     let (a, b) = (part.width().max(part.height()), path.width().max(path.height()));
-    if !scene.all_unvisited() && scene.facts.comparison.gouges.is_empty() {
+    let comparison = scene.facts.comparison;
+    if !scene.all_unvisited() && comparison.gouges.is_empty() && comparison.excesses.is_empty() {
         return None;
     }
     let near = |ratio: f64| (MM_PER_INCH / UNIT_SLACK..=MM_PER_INCH * UNIT_SLACK).contains(&ratio);
@@ -88,12 +91,24 @@ fn elsewhere(scene: &Scene<'_>, part: Rect, path: Rect) -> Option<Problem> {
         ),
         "a contour beside the path of the cutter",
         format!(
-            "lay the drawing where the program cuts with --mirror, --turn and --shift (--shift {},{} would bring \
-             both middles together)",
-            super::number_text(shift.x, unit),
-            super::number_text(shift.y, unit)
+            "lay the drawing where the program cuts with --mirror, --turn and --shift (moved by {} from where it \
+             lies now, both middles would come together)",
+            point_text(shift.to_point(), unit)
         ),
     ))
+}
+
+/// The cutter's center runs inside the material all the way.
+fn wrong_side(scene: &Scene<'_>) -> Option<Problem> {
+    scene.runs_in_material().then(|| {
+        Problem::warning(
+            drawing(scene),
+            "the cutter's center runs inside the material all the way",
+            "a path beside the part",
+            "check --keep (auto takes the side on which the cutter does not run), and that the drawing lies where \
+             the program cuts",
+        )
+    })
 }
 
 /// A pocket whose every opening is narrower than the smallest cutter.
@@ -121,6 +136,27 @@ fn wider_than_openings(scene: &Scene<'_>) -> Option<Problem> {
     ))
 }
 
+/// Most of the stock that was to be left is cut away nearly everywhere.
+fn allowance_cut(scene: &Scene<'_>) -> Option<Problem> {
+    let (allowance, unit) = (scene.facts.part.allowance, scene.facts.unit);
+    let deviation = scene.facts.comparison.deviation?;
+    let missing = -deviation.median;
+    if !(allowance > 0.0 && missing > 0.5 * allowance && deviation.share >= 0.6) {
+        return None;
+    }
+    Some(Problem::warning(
+        drawing(scene),
+        format!(
+            "the allowance is not left: about {} of {} is cut away along {:.0} % of the contour that is cut",
+            length_text(missing.min(allowance), unit),
+            length_text(allowance, unit),
+            100.0 * deviation.share.clamp(0.0, 1.0)
+        ),
+        "a path that leaves the allowance standing",
+        "nothing, if this is the finishing pass: then leave --allowance out; else check the cutter and the wear offset",
+    ))
+}
+
 /// Loops that were left out of the judgement because nothing comes near them.
 fn left_out(scene: &Scene<'_>) -> Option<Problem> {
     let comparison = scene.facts.comparison;
@@ -131,11 +167,13 @@ fn left_out(scene: &Scene<'_>) -> Option<Problem> {
         Problem::warning(
             drawing(scene),
             format!(
-                "{count} of the drawing's {} loops and chains are not judged: the program never comes near them",
-                scene.walls.contour().paths().len()
+                "{count} of the drawing's {} contours {} not judged: the program never comes near {}",
+                scene.walls.contour().paths().len(),
+                if count == 1 { "is" } else { "are" },
+                if count == 1 { "it" } else { "them" }
             ),
             "",
-            "make sure another tool or program cuts them; without --only-visited each one is a fault",
+            "make sure another tool or program cuts what is left out; without --only-visited it is a fault",
         )
     })
 }

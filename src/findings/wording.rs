@@ -4,7 +4,7 @@
 use super::corner::Tight;
 use super::diagnose::Scene;
 use super::draft::{Diagnosis, Draft};
-use super::moves::{Chords, Cuts, chord_within, step_over_within};
+use super::moves::{Chords, Cuts, Run, chord_within, step_over_within};
 use super::number::{
     angle_text, angle_text_down, figure_text, length_text, length_text_down, length_text_up, point_text,
     stated_text,
@@ -14,15 +14,16 @@ use super::{BlockRef, Kind};
 use crate::compare::FoldKind;
 use crate::geometry::{Point, Vec2};
 use crate::program::Unit;
+use crate::tolerance::MM_PER_INCH;
 
 /// Below this a cutter is no answer, as a fraction of the one in use.
 const SENSIBLE: f64 = 0.2;
 
 /// Puts findings into words.
 pub(super) struct Words<'a> {
-    scene: &'a Scene<'a>,
-    unit: Unit,
-    allowance: f64,
+    pub(super) scene: &'a Scene<'a>,
+    pub(super) unit: Unit,
+    pub(super) allowance: f64,
 }
 
 impl<'a> Words<'a> {
@@ -32,6 +33,10 @@ impl<'a> Words<'a> {
 
     /// The blocks of a draft, the worst first.
     pub(super) fn blocks(&self, d: &Draft) -> Vec<BlockRef> {
+        if d.diagnosis == Diagnosis::NeverVisited {
+            // No block makes it: what is missing stands nowhere.
+            return Vec::new();
+        }
         let worst: Vec<usize> = d.culprits.iter().map(|c| c.1).collect();
         let gouge_or_fold = matches!(d.kind, Kind::Gouge | Kind::Fold);
         let range = match d.diagnosis {
@@ -106,6 +111,11 @@ impl<'a> Words<'a> {
                 100.0 * share.clamp(0.0, 1.0),
                 if *median < 0.0 { "larger" } else { "smaller" }
             ),
+            Diagnosis::Chords(c) if d.moves.0 == d.moves.1 && d.count == 1 => format!(
+                ": in {lines} a straight move of {} cuts across a curve, up to {} off it.",
+                self.len(c.length),
+                self.len(c.sagitta())
+            ),
             Diagnosis::Chords(c) => format!(
                 ": in {} a curve is cut in straight chords of about {}, each up to {} off the curve.",
                 lines,
@@ -138,8 +148,18 @@ impl<'a> Words<'a> {
             Diagnosis::FoldNote { radius, .. } => {
                 format!(" turns on a radius of {}, tighter than {cutter}, in {lines}.", self.len(*radius))
             }
-            Diagnosis::Unknown if d.kind == Kind::Gouge => format!(", in {lines}."),
-            Diagnosis::Unknown => format!(": the nearest pass, {lines}, stands off the contour."),
+            Diagnosis::WrongWay { .. } => format!(": the arc of {} turns the wrong way.", self.worst_line(d)),
+            Diagnosis::Gap { first, last } => format!(
+                ": the cut that begins in {} ends in {} before it meets its beginning.",
+                self.scene.cuts.lines_text(*first, *first),
+                self.scene.cuts.lines_text(*last, *last)
+            ),
+            Diagnosis::SharpTurn { radius } => self.why_sharp(*radius, d),
+            Diagnosis::OffPath if d.kind == Kind::Gouge => {
+                format!(": the path of {} runs too near to it.", self.worst_line(d))
+            }
+            Diagnosis::OffPath => format!(": the nearest pass, {lines}, stands off the contour."),
+            Diagnosis::Unknown => format!(", in {lines}."),
         }
     }
 
@@ -161,25 +181,6 @@ impl<'a> Words<'a> {
                 )
             }
         }
-    }
-
-    fn why_unvisited(&self, d: &Draft, cutter: &str) -> String {
-        let path = d.contour.and_then(|c| self.scene.walls.contour().paths().get(c.path));
-        let what = if path.is_some_and(|p| p.is_closed()) { "loop" } else { "chain" };
-        let number = d.contour.map_or(0, |c| c.path);
-        let Some(b) = path.map(|p| p.bounds()) else {
-            return ": the program never comes near it.".to_owned();
-        };
-        let wide = if what == "loop" && b.width().min(b.height()) < 2.0 * d.radius {
-            format!(", and {cutter} is wider")
-        } else {
-            String::new()
-        };
-        format!(
-            ": the program never comes near {what} {number} of the drawing ({} by {}{wide}).",
-            self.len(b.width()),
-            self.len(b.height())
-        )
     }
 
     /// What to change.
@@ -204,23 +205,25 @@ impl<'a> Words<'a> {
                 self.down(2.0 * d.radius),
                 self.up(2.0 * d.figure.size)
             ),
-            Diagnosis::NeverVisited => {
-                "If another tool or program makes it, leave it out with --only-visited; else add the moves \
-                 that cut it."
-                    .to_owned()
+            Diagnosis::NeverVisited => self.remedy_unvisited(d),
+            Diagnosis::WrongWay { left } => {
+                let (right, wrong) = if *left { ("G2", "G3") } else { ("G3", "G2") };
+                format!("Write {right} in place of {wrong} in {}.", self.worst_line(d))
             }
-            Diagnosis::EntryTooDeep { .. } | Diagnosis::Unknown if d.kind == Kind::Gouge => self.move_away(d),
-            Diagnosis::CutTooShort { entry, run } => {
-                let (i, word) = if *entry { (run.first, "Begin") } else { (run.last, "End") };
-                let more = d.contour.map_or(d.figure.size, |c| Walls::stretch_length(&c));
-                let way = if *entry { "earlier" } else { "later" };
-                format!(
-                    "{word} the cut of {} up to {} {way} along the contour, so that it overlaps.",
-                    self.scene.cuts.lines_text(i, i),
-                    self.up(more)
-                )
+            Diagnosis::SharpTurn { radius } => self.remedy_sharp(*radius, d),
+            Diagnosis::EntryTooDeep { .. } | Diagnosis::OffPath | Diagnosis::Unknown
+                if d.kind == Kind::Gouge =>
+            {
+                self.move_away(d)
             }
-            Diagnosis::EntryTooDeep { .. } | Diagnosis::Unknown => self.move_closer(d),
+            Diagnosis::Gap { last, .. } => format!(
+                "Let the end of the cut overlap its beginning: run on {} or more along the contour from the end \
+                 of {} before leading off.",
+                self.up(d.contour.map_or(d.figure.size, |c| Walls::stretch_length(&c))),
+                self.scene.cuts.lines_text(*last, *last)
+            ),
+            Diagnosis::CutTooShort { entry, run } => self.remedy_too_short(*entry, *run, d),
+            Diagnosis::EntryTooDeep { .. } | Diagnosis::OffPath | Diagnosis::Unknown => self.move_closer(d),
             Diagnosis::Rapid => self.remedy_rapid(d),
             Diagnosis::FoldNote { kind: FoldKind::Loop, .. } if d.count == 1 => self.cut_out(d.moves, d.at),
             Diagnosis::FoldNote { kind: FoldKind::Loop, .. } => {
@@ -279,6 +282,14 @@ impl<'a> Words<'a> {
         } else {
             "The path stands on the wrong side of the contour, or ".to_owned()
         };
+        let ratio = d.radius / (d.radius + median);
+        if (ratio / MM_PER_INCH - 1.0).abs() < 0.02 {
+            return format!(
+                "The diameter looks like millimetres, but lengths are taken in inches here, as the program's: \
+                 say --diameter {}, or --units mm.",
+                super::number::number_text(met, self.unit)
+            );
+        }
         if median < 0.0 {
             format!(
                 "{cutter}keep the path {by} farther from the part (wear offset of {by} on the radius, {} on the \
@@ -311,12 +322,26 @@ impl<'a> Words<'a> {
         )
     }
 
+    fn remedy_too_short(&self, entry: bool, run: Run, d: &Draft) -> String {
+        let (i, word, way) = if entry { (run.first, "Begin", "earlier") } else { (run.last, "End", "later") };
+        let lines = self.scene.cuts.lines_text(i, i);
+        if !self.scene.runs_along(i, if entry { 0.0 } else { 1.0 }, d) {
+            let by = self.up(d.figure.size);
+            return format!("{word} the cut of {lines} at least {by} {way}, nearer to the wall.");
+        }
+        let more = d.contour.map_or(d.figure.size, |c| Walls::stretch_length(&c));
+        format!(
+            "{word} the cut of {lines} up to {} {way} along the contour, so that it overlaps.",
+            self.up(more)
+        )
+    }
+
     fn remedy_no_pass(&self, d: &Draft) -> String {
         let away = self.len(d.radius + self.allowance);
         let along =
             d.contour.map_or_else(String::new, |c| format!(", {} long", self.up(Walls::stretch_length(&c))));
         format!(
-            "Add a pass along this stretch of the contour{along} with the cutter's center {away} from the wall, \
+            "Add a pass along this stretch of the contour{along}, with the cutter's center {away} from the wall, \
              or bring the nearest one ({}) {} closer.",
             self.scene.cuts.lines_text(d.worst_move(), d.worst_move()),
             self.up(d.figure.size)
@@ -363,8 +388,18 @@ impl<'a> Words<'a> {
         )
     }
 
-    /// Which blocks to take out so that the moves before and after the loop meet.
-    fn cut_out(&self, (first, last): (usize, usize), at: Point) -> String {
+    /// Which blocks to take out so that the moves before and after the loop meet, and what becomes of
+    /// the corner where they do: sharp, it fits the wall only where the wall's own radius is the cutter's.
+    fn cut_out(&self, moves: (usize, usize), at: Point) -> String {
+        let radius = self.len(self.scene.cuts.radius(moves.0));
+        format!(
+            "{} Where the wall there is a fillet wider than the cutter, round that corner of the path with an \
+             arc of the fillet's radius less {radius}.",
+            self.joined(moves, at)
+        )
+    }
+
+    fn joined(&self, (first, last): (usize, usize), at: Point) -> String {
         let cuts = &self.scene.cuts;
         let place = point_text(at, self.unit);
         let crosses = |i: usize| {
@@ -400,6 +435,10 @@ impl<'a> Words<'a> {
             self.up(radius),
             self.down(2.0 * turn)
         )
+    }
+
+    fn worst_line(&self, d: &Draft) -> String {
+        self.scene.cuts.lines_text(d.worst_move(), d.worst_move())
     }
 
     fn two_lines(&self, d: &Draft) -> String {

@@ -12,6 +12,7 @@ mod biarc;
 mod chords;
 mod contour;
 mod crossing;
+pub mod exchange;
 mod index;
 mod line;
 mod nearest;

@@ -15,7 +15,8 @@ use super::{DiscFamily, DiscMove};
 pub struct PlanView {
     /// Moves at feed rate: they cut.
     pub cutting: DiscFamily,
-    /// Rapid moves below the level: they must not meet the part. Empty where the program never says Z.
+    /// Rapid moves below the level: they must not meet the part. Left out are those straight up from where
+    /// the tool has just been, which sweep nothing new. Empty where the program never says Z.
     pub rapids: DiscFamily,
 }
 
@@ -54,6 +55,9 @@ pub fn plan(
         if m.kind == MoveKind::Rapid && !program.says_z {
             continue;
         }
+        if rises_in_place(program, source, m) {
+            continue;
+        }
         pieces.clear();
         below(m, level, &mut pieces)?;
         if pieces.is_empty() {
@@ -71,6 +75,18 @@ pub fn plan(
     }
     view.cutting.moves.shrink_to_fit();
     Ok(view)
+}
+
+/// A rapid straight up from where the same tool has just been: it sweeps nothing new, and what the move
+/// before did there is told of that move.
+fn rises_in_place(program: &Program, source: u32, m: &Move) -> bool {
+    let (start, end) = (m.motion.start(), m.motion.end());
+    let before =
+        usize::try_from(source).ok().and_then(|i| i.checked_sub(1)).and_then(|i| program.moves.get(i));
+    m.kind == MoveKind::Rapid
+        && start.plan() == end.plan()
+        && end.z >= start.z
+        && before.is_some_and(|b| b.tool == m.tool && b.motion.end() == start)
 }
 
 /// Lowest height of the tip at the ends of a motion.
@@ -142,5 +158,77 @@ fn upright(plane: Plane, arc: &Arc, along: f64, level: f64, out: &mut Vec<Segmen
         if to > from && height(middle) < level {
             out.push(Segment::line(plan_point(from), plan_point(to)));
         }
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::geometry::Turn;
+    use crate::program::{Block, Unit};
+
+    fn at(x: f64, y: f64, z: f64) -> Point3 {
+        Point3 { x, y, z }
+    }
+
+    /// Straight moves through the points, each with its kind and tool.
+    fn straight(start: Point3, to: &[(Point3, MoveKind, u32)]) -> Program {
+        let mut from = start;
+        let step = |&(end, kind, tool): &(Point3, MoveKind, u32)| {
+            let motion = Motion::Straight { start: from, end };
+            from = end;
+            Move { motion, kind, tool, block: BlockId(0) }
+        };
+        of(to.iter().map(step).collect())
+    }
+
+    fn of(moves: Vec<Move>) -> Program {
+        Program {
+            file: "a.nc".into(),
+            unit: Unit::Millimetre,
+            unit_stated: true,
+            says_z: true,
+            blocks: std::iter::once(Block { line: 1, text: "G1" }).collect(),
+            moves,
+            bound: 0.0,
+        }
+    }
+
+    fn seen(program: &Program, level: f64) -> PlanView {
+        plan(program, level, |_| Cutter::flat(10.0).ok()).unwrap()
+    }
+
+    #[test]
+    fn a_rapid_straight_up_from_the_end_of_a_cut_sweeps_nothing_but_one_of_another_tool_does() {
+        use MoveKind::{Feed, Rapid};
+        let cut = [(at(0.0, 0.0, -5.0), Feed, 1), (at(0.0, 0.0, 5.0), Rapid, 1)];
+        assert!(seen(&straight(at(0.0, 0.0, 5.0), &cut), 0.0).rapids.moves.is_empty());
+        let other = [(at(0.0, 0.0, -5.0), Feed, 1), (at(0.0, 0.0, 5.0), Rapid, 2)];
+        assert_eq!(seen(&straight(at(0.0, 0.0, 5.0), &other), 0.0).rapids.moves.len(), 1);
+        let down = [(at(0.0, 0.0, -5.0), Rapid, 1)];
+        assert_eq!(seen(&straight(at(0.0, 0.0, 5.0), &down), 0.0).rapids.moves.len(), 1);
+        let slanted = [(at(0.0, 0.0, -5.0), Feed, 1), (at(9.0, 0.0, 5.0), Rapid, 1)];
+        assert_eq!(seen(&straight(at(0.0, 0.0, 5.0), &slanted), 0.0).rapids.moves.len(), 1);
+    }
+
+    #[test]
+    fn a_ramp_counts_only_from_where_it_dips_below_the_level() {
+        let ramp = straight(at(0.0, 0.0, 1.0), &[(at(40.0, 0.0, -3.0), MoveKind::Feed, 1)]);
+        let view = seen(&ramp, 0.0);
+        assert_eq!(
+            view.cutting.moves[0].segment,
+            Segment::line(Point::new(10.0, 0.0), Point::new(40.0, 0.0))
+        );
+        assert!(seen(&ramp, -3.0).cutting.moves.is_empty());
+    }
+
+    #[test]
+    fn half_of_a_helix_that_crosses_the_level_halfway_is_half_a_turn() {
+        let arc = Arc::full_circle(Point::ORIGIN, Point::new(10.0, 0.0), Turn::Left).unwrap();
+        let motion = Motion::Circular { plane: Plane::Xy, arc, along: (1.0, -1.0) };
+        let view = seen(&of(vec![Move { motion, kind: MoveKind::Feed, tool: 1, block: BlockId(0) }]), 0.0);
+        let [m] = view.cutting.moves.as_slice() else { panic!("{view:?}") };
+        assert!((m.segment.length() - 10.0 * std::f64::consts::PI).abs() < 1e-12);
+        assert!((m.segment.start() - Point::new(-10.0, 0.0)).hypot() < 1e-12);
     }
 }

@@ -163,7 +163,7 @@ fn a_gouge_far_from_the_loop_on_the_same_move_is_not_blamed_on_it() {
 fn a_tight_turn_is_blamed_only_for_what_lies_on_its_inner_side() {
     let turn = arc(p(0.0, 0.0), p(2.0, 0.0), p(-2.0, 0.0), Turn::Left);
     let cuts = [Segment::line(p(2.0, -30.0), p(2.0, 0.0)), turn, Segment::line(p(-2.0, 0.0), p(-2.0, -30.0))];
-    for (at, cause) in [(p(0.0, -2.0), Cause::TightTurn), (p(0.0, 6.5), Cause::Unknown)] {
+    for (at, cause) in [(p(0.0, -2.0), Cause::TightTurn), (p(0.0, 6.5), Cause::PathOffContour)] {
         let wall = lines(&[p(-50.0, at.y), p(50.0, at.y)]);
         let keep = if at.y > 0.0 { Keep::Left } else { Keep::Right };
         let part = part(vec![Path::new(wall, false).unwrap()], keep, 0.0);
@@ -363,7 +363,7 @@ fn a_wall_without_a_pass_is_a_missed_pass_and_one_beside_which_it_stands_off_is_
     let mut case = block_case(5.3, 5.0);
     case.comparison.excesses = vec![excess(0.3, p(50.0, 0.0), 3, stretch(0, 20.0, 80.0))];
     let f = case.only();
-    assert_eq!(f.cause, Cause::Unknown);
+    assert_eq!(f.cause, Cause::PathOffContour);
     holds(&f.remedy, &["0.300 mm closer", "5.000 mm from the contour"]);
 }
 
@@ -387,13 +387,14 @@ fn a_loop_that_nothing_visits_points_to_only_visited() {
     hole.whole_path = true;
     case.comparison.excesses = vec![hole];
     case.comparison.never_visited = vec![1];
-    let f = case.only();
+    let f = case.judge().findings.remove(0);
     assert_eq!(f.cause, Cause::NeverVisited);
+    assert!(f.blocks.is_empty(), "what is missing stands in no block");
     holds(
         &f.message,
-        &["loop 1 of the drawing (6.000 mm by 6.000 mm, and the cutter of 10.000 mm is wider)"],
+        &["loop 1 of the drawing, a circle of 6.000 mm diameter at X50.000 Y30.000", "10.000 mm is too wide"],
     );
-    holds(&f.remedy, &["--only-visited"]);
+    holds(&f.remedy, &["--only-visited", "this cutter cannot"]);
 }
 
 #[test]

@@ -1,6 +1,8 @@
 //! Findings from comparisons made by hand: every cause, its numbers, merging, order and verdict.
 
 mod causes;
+mod compared;
 mod fixture;
+mod paths;
 mod verdicts;
 mod whole;

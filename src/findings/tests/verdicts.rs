@@ -162,11 +162,11 @@ fn neighbouring_gouges_are_one_at_the_deepest_and_keep_area_and_blocks() {
 #[test]
 fn gouges_on_both_sides_of_a_loops_start_are_one() {
     let mut case = case();
-    let mut end = gouge(0.1, p(-5.0, 0.5), p(0.0, 0.5), 0, stretch(0, 518.5, 520.0));
+    let mut end = gouge(0.1, p(-5.0, 0.5), p(0.0, 0.5), 3, stretch(0, 518.5, 520.0));
     let mut start = bite(0.3, 1.0);
     start.stretch = stretch(0, 0.0, 2.0);
     // Neither is the entry alone.
-    (start.moves, end.moves) = ((0, 1), (0, 1));
+    (start.moves, end.moves) = ((0, 1), (0, 3));
     case.comparison.gouges = vec![start, end, bite(0.2, 150.0)];
     let findings = case.judge().findings;
     assert_eq!(findings.len(), 2, "{findings:#?}");

@@ -143,7 +143,7 @@ fn unit_of(
     } else if let Some(asked) = options.unit.filter(|u| *u != unit) {
         problems.push(Problem::warning(
             place,
-            format!("the drawing says it is in {}, not in {}", unit.sign(), asked.sign()),
+            format!("the drawing says it is in {}, not in {}", unit.name(), asked.name()),
             "one unit",
             "nothing if the drawing is right: its own unit was taken; else correct its unit",
         ));

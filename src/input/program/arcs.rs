@@ -17,6 +17,10 @@ use crate::geometry::{Arc, ArcError, Point, Turn};
 /// above what adding up increments loses. It turns no arc that a control can resolve into a circle.
 pub(super) const ONE_POINT_MM: f64 = 1e-9;
 
+/// An end off the circle by up to this many times the report's limit (0.05 mm) may come from rounding or
+/// from a control's own habit; more is a wrong word, and no limit to be widened.
+const ROUNDING: f64 = 25.0;
+
 /// How the block gives the circle.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub(super) enum Circle {
@@ -164,6 +168,10 @@ impl Commanded {
         }
         if fits(self.start + center.to_vec2()) {
             return "taken as increments from the start the center fits: write G91.1 before this block"
+                .to_owned();
+        }
+        if off > ROUNDING * limits.standard {
+            return "correct the end, the center, or the end of the move before it, where the arc starts"
                 .to_owned();
         }
         let wide = (off * limits.to_block * 1e5).ceil() / 1e5;

@@ -27,12 +27,12 @@ impl Interpreter<'_> {
         one_turn(words)?;
         let circle_words = self.circle_words(words)?;
         let target = self.target(line, words)?;
-        if self.faults.refused() && self.position.known.contains(&false) {
+        if self.faults.refused() && !self.position.knows(self.plane) {
             // The start hangs on a block that is wrong: nothing more can be said about this one.
             self.arrive(target);
             return Ok(());
         }
-        self.assume_start(line, words);
+        self.assume_start(line, words)?;
         let before = self.position;
         self.arrive(target);
         let after = self.position;

@@ -83,6 +83,8 @@ pub(super) enum Note {
     NoTool,
     /// G28, G30 or G53 taken as a retract.
     Home(u16),
+    /// G28 or G30 of all axes together.
+    HomeTogether(u16),
     /// M99 taken as the end.
     Return,
     /// A feed move or an increment starts where the program never said: X or Y.

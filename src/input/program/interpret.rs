@@ -15,6 +15,7 @@ use super::frame::Units;
 use super::moves::Moves;
 use super::orders::Orders;
 use super::position::{LETTERS, Position};
+use super::retract::from_fixed_point;
 use super::words::{Code, Words, bits};
 use super::{AXES, ProgramOptions};
 use crate::program::{Motion, MoveKind, Plane, Unit};
@@ -216,7 +217,13 @@ impl<'a> Interpreter<'a> {
             let span = words.span(letter);
             let mut to = self.bounded(value, span)?;
             if self.distance == Distance::Incremental {
+                if self.position.away && axis < 2 {
+                    return Err(from_fixed_point(words));
+                }
                 self.assume(line, span, axis);
+                if !self.position.known.get(axis).copied().unwrap_or(false) {
+                    continue;
+                }
                 to += self.position.at.get(axis).copied().unwrap_or(0.0);
             }
             *slot = Some(within(to, span)?);
@@ -233,10 +240,17 @@ impl<'a> Interpreter<'a> {
     }
 
     /// Takes every axis whose position the program has not said as standing at 0, and says so.
-    pub(super) fn assume_start(&mut self, line: Line<'_>, words: &Words) {
+    ///
+    /// # Errors
+    /// When X or Y are at a fixed point of the machine: 0 would be a wrong guess.
+    pub(super) fn assume_start(&mut self, line: Line<'_>, words: &Words) -> Result<(), Fault> {
+        if self.position.away {
+            return Err(from_fixed_point(words));
+        }
         if self.position.known.contains(&false) {
             (0..3).for_each(|axis| self.assume(line, words.extent(), axis));
         }
+        Ok(())
     }
 
     /// Takes an axis as standing at 0 where the program has not said its position, and says so.
@@ -245,10 +259,11 @@ impl<'a> Interpreter<'a> {
         if *known {
             return;
         }
-        *known = true;
+        // After an error nothing is assumed: a wrong guess would only make errors of sound blocks.
         if self.faults.refused() {
             return;
         }
+        *known = true;
         if axis == 2 {
             self.faults.note(Note::HeightAssumed, line, span, || {
                 let found = "a move starts at a height the program has not said: taken as Z 0".to_owned();
@@ -276,7 +291,7 @@ impl<'a> Interpreter<'a> {
         kind: MoveKind,
     ) -> Result<(), Fault> {
         if kind == MoveKind::Feed {
-            self.assume_start(line, words);
+            self.assume_start(line, words)?;
         }
         let before = self.position;
         self.arrive(target);
@@ -304,6 +319,9 @@ impl<'a> Interpreter<'a> {
         }
         if target[2].is_some() {
             self.position.retracted = false;
+        }
+        if self.position.knows_plan() {
+            self.position.away = false;
         }
     }
 

@@ -19,6 +19,8 @@ pub(super) struct Moves {
     pub says_z: bool,
     /// Rapids at a height the program has not said, as positions in `moves`.
     blind: Vec<usize>,
+    /// Greatest height at which a feed move ends that does not go straight up.
+    highest_feed: Option<f64>,
     /// Tool in the spindle by M6.
     spindle: u32,
     /// The last T word.
@@ -46,9 +48,19 @@ impl Moves {
             self.last_line = line.number;
             self.blocks.push(line.number, &decode(line.text));
         }
+        let (start, end) = (motion.start(), motion.end());
+        let rises = start.plan() == end.plan() && end.z > start.z;
+        if kind == MoveKind::Feed && !rises {
+            self.highest_feed = Some(self.highest_feed.map_or(end.z, |z| z.max(end.z)));
+        }
         let block = u32::try_from(self.blocks.len().saturating_sub(1)).map_err(|_| TooMany)?;
         self.moves.push(Move { motion, kind, tool: self.spindle, block: BlockId(block) });
         Ok(())
+    }
+
+    /// Do all feed moves so far end below `z`, but for those that go straight up?
+    pub fn all_end_below(&self, z: f64) -> bool {
+        self.highest_feed.is_none_or(|highest| highest < z)
     }
 
     /// Marks the last move as a rapid whose height the program has not said.

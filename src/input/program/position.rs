@@ -16,6 +16,8 @@ pub(super) struct Position {
     pub known: [bool; 3],
     /// Z is at its fixed point at the top, above everything.
     pub retracted: bool,
+    /// X and Y are at a fixed point of the machine, which the program does not know.
+    pub away: bool,
 }
 
 impl Position {
@@ -51,6 +53,16 @@ impl Position {
         x && y
     }
 
+    /// Are both its coordinates in a plane known?
+    pub const fn knows(&self, plane: Plane) -> bool {
+        let [x, y, z] = self.known;
+        match plane {
+            Plane::Xy => x && y,
+            Plane::Zx => z && x,
+            Plane::Yz => y && z,
+        }
+    }
+
     /// Is Z known?
     pub const fn knows_height(&self) -> bool {
         self.known[2]
@@ -58,13 +70,14 @@ impl Position {
 
     /// Nothing is known from here on.
     pub const fn forget(&mut self) {
-        *self = Self { at: [0.0; 3], known: [false; 3], retracted: false };
+        *self = Self { at: [0.0; 3], known: [false; 3], retracted: false, away: false };
     }
 
     /// X and Y are known no more.
     pub const fn forget_plan(&mut self) {
         self.at = [0.0, 0.0, self.at[2]];
         self.known = [false, false, self.known[2]];
+        self.away = true;
     }
 
     /// Z is at its fixed point, whose height is not known.

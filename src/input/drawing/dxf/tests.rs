@@ -188,7 +188,7 @@ fn units_other_than_mm_and_inch_are_converted_and_told() {
     let declared = drawing(&["CIRCLE 10 3 20 4 40 2"]);
     let reading = read_dxf(declared.as_bytes(), "x", &options).unwrap();
     assert_eq!(reading.value.unit, Some(Unit::Millimetre));
-    assert!(reading.problems[0].found.contains("in mm, not in in"));
+    assert!(reading.problems[0].found.contains("in millimetres, not in inches"));
     assert!(refused(&drawing_in(Some(19), &["CIRCLE 10 3 20 4 40 2"]))[0].found.contains("$INSUNITS 19"));
 }
 

@@ -28,6 +28,10 @@ impl<'a> Source<'a> {
             let found = "the drawing is compressed (gzip)";
             return Err(vec![Problem::error(Place::file(file), found, "plain SVG text", help)]);
         }
+        if bytes.iter().all(u8::is_ascii_whitespace) {
+            let help = "export the drawing again";
+            return Err(vec![Problem::error(Place::file(file), "the file is empty", "an SVG drawing", help)]);
+        }
         match from_utf8(bytes) {
             Ok(text) => {
                 let ends = text.bytes().enumerate().filter(|(_, b)| *b == b'\n').map(|(i, _)| i + 1);

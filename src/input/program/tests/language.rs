@@ -163,14 +163,53 @@ fn a_return_of_z_is_a_retract_to_an_unknown_height() {
 #[test]
 fn returns_of_x_and_y_at_working_height_are_refused() {
     for text in [
-        "G21 G0 X0 Y0 Z5\nG28",
-        "G21 G0 X0 Y0 Z5\nG91 G28 X0 Y0 Z0",
         "G21 G0 X0 Y0 Z5\nG53 G0 X0",
         "G21 G0 X0 Y0 Z5\nG53 G0 Z-10",
         "G21 G0 X0 Y0 Z5\nG91 G28 Z0\nG90 G28 X0 Z0",
     ] {
         assert!(shown(&refused(text.as_bytes())).contains("point of the machine"), "{text}");
     }
+}
+
+#[test]
+fn a_return_of_all_axes_at_the_end_is_taken_with_a_warning_when_the_tool_stands_clear() {
+    let cut = "G21 G90 G0 X0 Y0 Z5\nG1 Z-1 F100\nG1 X20\nG0 Z5\n";
+    for end in [
+        "G28",
+        "G91 G28 X0 Y0 Z0",
+        "G0 Z-1\nG1 Z2\nG91 G28 Z0 X0. Y0.",
+        "G91 G28 Z0\nG28",
+        "G91 G28 Z0\nG28 X0 Y0",
+        "G28\nG90 G0 X5 Y5\nG0 Z5\nG1 Z-1\nG0 Z5\nG28",
+    ] {
+        let reading = read(&format!("{cut}{end}\nM30"));
+        assert!(warned(&reading, "G28"), "{end}");
+        // The course to the fixed point is no move.
+        assert!(reading.value.moves.len() <= 9, "{end}");
+    }
+    assert!(warned(&read(&format!("{cut}G28\nM30")), "sends all axes to a fixed point"));
+    // A laser never says Z.
+    assert!(warned(&read("G21 G0 X0 Y0\nG1 X5\nG28\nM30"), "sends all axes"));
+}
+
+#[test]
+fn a_return_of_all_axes_from_cutting_depth_is_refused() {
+    for end in ["G28", "G91 G28 X0 Y0 Z0"] {
+        for cut in ["G1 X20 Z0\nG1 Z-2", "G1 X20", "G1 Z-3\nG1 X5\nG1 Z-1\nG1 X9 Z-1"] {
+            let text = format!("G21 G90 G0 X0 Y0 Z5\nG1 Z-1 F100\n{cut}\n{end}\nM30");
+            assert!(shown(&refused(text.as_bytes())).contains("from cutting depth"), "{cut} {end}");
+        }
+    }
+}
+
+#[test]
+fn a_cut_or_an_increment_from_the_machines_fixed_point_is_refused_but_a_rapid_leads_back() {
+    let before = "G21 G90 G0 X0 Y0 Z5\nG1 Z-1\nG0 Z5\nG91 G28 X0 Y0 Z0\n";
+    for next in ["G90 G1 X5 Y5", "G1 X5", "G90 G0 X5\nG1 Y5", "G2 X5 Y5 I5", "G0 X5 Y5"] {
+        let text = format!("{before}{next}\nM30");
+        assert!(shown(&refused(text.as_bytes())).contains("fixed point of the machine"), "{next}");
+    }
+    read(&format!("{before}G90 G0 X5 Y5\nG0 Z1\nG1 Z-1\nM30"));
 }
 
 #[test]

@@ -142,12 +142,69 @@ pub struct BlockId(pub u32);
 pub struct MoveIndex(pub u32);
 
 /// One block: a line of the program as written.
-#[derive(Clone, Debug, PartialEq, Eq)]
-pub struct Block {
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct Block<'a> {
     /// Line in the file, from 1.
     pub line: usize,
     /// Text of the line, without its end.
-    pub text: String,
+    pub text: &'a str,
+}
+
+/// Blocks in file order. Their texts lie in one buffer: a million blocks of their own would take several
+/// times the memory of the file.
+#[derive(Clone, Debug, PartialEq, Eq, Default)]
+pub struct Blocks {
+    text: String,
+    /// Line of each block, and where its text ends in `text`.
+    marks: Vec<(usize, usize)>,
+}
+
+impl Blocks {
+    /// Adds a block after the last one: the line of the file, from 1, and its text.
+    pub fn push(&mut self, line: usize, text: &str) {
+        self.text.push_str(text);
+        self.marks.push((line, self.text.len()));
+    }
+
+    /// The block at a position, as [`BlockId`] holds it.
+    #[must_use]
+    pub fn get(&self, at: usize) -> Option<Block<'_>> {
+        let &(line, end) = self.marks.get(at)?;
+        let start = at.checked_sub(1).and_then(|before| self.marks.get(before)).map_or(0, |m| m.1);
+        Some(Block { line, text: self.text.get(start..end)? })
+    }
+
+    /// The last block.
+    #[must_use]
+    pub fn last(&self) -> Option<Block<'_>> {
+        self.get(self.marks.len().checked_sub(1)?)
+    }
+
+    /// Number of blocks.
+    #[must_use]
+    pub fn len(&self) -> usize {
+        self.marks.len()
+    }
+
+    /// True without blocks.
+    #[must_use]
+    pub fn is_empty(&self) -> bool {
+        self.marks.is_empty()
+    }
+
+    /// Gives back memory that was kept for blocks to come.
+    pub fn shrink(&mut self) {
+        self.text.shrink_to_fit();
+        self.marks.shrink_to_fit();
+    }
+}
+
+impl<'a> FromIterator<Block<'a>> for Blocks {
+    fn from_iter<I: IntoIterator<Item = Block<'a>>>(blocks: I) -> Self {
+        let mut all = Self::default();
+        blocks.into_iter().for_each(|b| all.push(b.line, b.text));
+        all
+    }
 }
 
 /// One motion of the cutter.
@@ -175,7 +232,7 @@ pub struct Program {
     /// True when a Z word was seen: without one every feed move cuts.
     pub says_z: bool,
     /// Blocks that command moves, in file order.
-    pub blocks: Vec<Block>,
+    pub blocks: Blocks,
     /// Moves, in order of execution.
     pub moves: Vec<Move>,
     /// Greatest distance between a commanded curve and the arc kept for it.

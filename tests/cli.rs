@@ -404,3 +404,86 @@ fn every_schema_is_one() {
         assert!(jsonschema::meta::is_valid(&json(&schema.out)), "{name}");
     }
 }
+
+#[test]
+fn results_are_the_same_for_any_number_of_threads() {
+    let folder = square();
+    let (part, program) = (within(&folder, "square.csv"), within(&folder, "round.nc"));
+    let all = |threads: &str| {
+        let [json, svg] = ["report.json", "picture.svg"].map(|n| within(&folder, &format!("{threads}-{n}")));
+        let own =
+            ["check", "--part", &part, "--program", &program, "-d", "4.3", "--shift", "100,0", "--clear"];
+        let rest = ["area", "--keep", "inside", "--json", &json, "--svg", &svg, "--threads", threads];
+        let ran = run(&[&own[..], &rest[..]].concat());
+        assert_eq!(ran.status, 1, "{}{}", ran.out, ran.err);
+        (ran.out, fs::read(json).unwrap(), fs::read(svg).unwrap())
+    };
+    let one = all("1");
+    assert!(one == all("2") && one == all("3") && one == all("0"));
+    let job = |threads: &str| run(&["check", &example("untrimmed.toml"), "--threads", threads]).out;
+    assert!(job("1") == job("2") && job("1") == job("3"));
+    assert_refused_usage(&run(&["check", &example("good.toml"), "--threads", "many"]));
+}
+
+fn assert_refused_usage(ran: &Ran) {
+    assert_eq!((ran.status, ran.out.as_str()), (2, ""));
+    assert!(ran.err.contains("--threads"), "{}", ran.err);
+}
+
+#[test]
+fn timings_name_every_stage_on_standard_error_and_change_nothing_else() {
+    let quiet = run(&["check", &example("good.toml")]);
+    let timed = run(&["check", &example("good.toml"), "--timings"]);
+    assert_eq!((timed.status, &timed.out), (quiet.status, &quiet.out));
+    assert!(!quiet.err.contains(" ms "), "{}", quiet.err);
+    let stages = ["read drawing", "read program", "view", "sweep", "gouges", "excesses", "folds", "findings"];
+    for stage in stages.iter().chain(&["write text", "write files", "in all"]) {
+        let line = timed.err.lines().find(|l| l.contains(stage)).unwrap();
+        let taken: f64 = line.split(" ms ").next().unwrap().trim().parse().unwrap();
+        assert!(taken >= 0.0, "{line}");
+    }
+    let folder = square();
+    let edge = run(&[
+        "envelope",
+        "--program",
+        &within(&folder, "round.nc"),
+        "-d",
+        "4",
+        "--units",
+        "mm",
+        "--timings",
+    ]);
+    assert_eq!(edge.status, 0, "{}", edge.err);
+    assert!(edge.err.contains(" ms  sweep"), "{}", edge.err);
+}
+
+#[cfg(target_os = "linux")]
+#[test]
+fn an_interrupt_leaves_no_file_behind() {
+    let folder = square();
+    // A full pipe holds the program up while its files wait beside their places.
+    let (_reader, mut writer) = std::io::pipe().unwrap();
+    writer.write_all(&[b' '; 1 << 16]).unwrap();
+    let mut child = program()
+        .args(["check", "--part", &within(&folder, "square.csv"), "--program", &within(&folder, "round.nc")])
+        .args(["-d", "4", "--shift", "100,0", "--json", "-", "--svg", &within(&folder, "picture.svg")])
+        .args(["--dxf", &within(&folder, "edge.dxf"), "--keep", "inside"])
+        .stdout(writer)
+        .spawn()
+        .unwrap();
+    let names = || {
+        let names = fs::read_dir(folder.path()).unwrap().map(|e| e.unwrap().file_name());
+        let mut names: Vec<String> = names.map(|n| n.to_string_lossy().into_owned()).collect();
+        names.sort();
+        names
+    };
+    let began = std::time::Instant::now();
+    while names().len() < 4 && began.elapsed().as_secs() < 30 {
+        std::thread::sleep(std::time::Duration::from_millis(5));
+    }
+    assert_eq!(names().len(), 4, "two files wait: {:?}", names());
+    std::thread::sleep(std::time::Duration::from_millis(50));
+    let _ = Command::new("kill").args(["-INT", &child.id().to_string()]).status().unwrap();
+    assert_eq!(child.wait().unwrap().code(), Some(130));
+    assert_eq!(names(), ["round.nc", "square.csv"]);
+}

@@ -72,8 +72,8 @@ fn judge(text: &[u8], options: &ProgramOptions) -> bool {
             assert!(!program.moves.is_empty() && program.bound.is_finite());
             assert!(options.target.is_none_or(|t| t == program.unit));
             for m in &program.moves {
-                let block = &program.blocks[m.block.0 as usize];
-                assert!(block.line >= 1 && !block.text.contains(['\n', '\r']));
+                let block = program.blocks.get(m.block.0 as usize);
+                assert!(block.is_some_and(|b| b.line >= 1 && !b.text.contains(['\n', '\r'])));
                 let (a, b) = (m.motion.start(), m.motion.end());
                 assert!([a.x, a.y, a.z, b.x, b.y, b.z].iter().all(|v| v.is_finite()));
             }

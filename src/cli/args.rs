@@ -188,9 +188,31 @@ pub struct CheckArgs {
         hide_short_help = true
     )]
     pub color: ColorWhen,
+    #[command(flatten)]
+    pub running: RunningArgs,
     /// Print help; --help says more
     #[arg(long, short, action = ArgAction::Help, help_heading = "Output")]
     help: Option<bool>,
+}
+
+/// Most threads that may be asked for: more than any machine of a shop has cores.
+const MOST_THREADS: i64 = 1024;
+
+/// How the work is done.
+#[derive(Clone, Copy, Debug, Default, Args)]
+#[command(next_help_heading = "Output")]
+pub struct RunningArgs {
+    /// Use this many cores; the results are the same [default: all]
+    #[arg(
+        long,
+        value_name = "N",
+        value_parser = clap::value_parser!(u16).range(0..=MOST_THREADS),
+        hide_short_help = true
+    )]
+    pub threads: Option<u16>,
+    /// Tell the milliseconds of each stage on standard error
+    #[arg(long, hide_short_help = true)]
+    pub timings: bool,
 }
 
 /// The drawing and where it lies.
@@ -325,6 +347,8 @@ pub struct EnvelopeArgs {
     /// Print no summary
     #[arg(long, short, help_heading = "Output")]
     pub quiet: bool,
+    #[command(flatten)]
+    pub running: RunningArgs,
     /// Print help; --help says more
     #[arg(long, short, action = ArgAction::Help, help_heading = "Output")]
     help: Option<bool>,

@@ -7,6 +7,7 @@ use super::files;
 use super::judge;
 use super::lay::{Laid, lay};
 use super::request::{Check, LimitsRequest, PartRequest, ProgramRequest};
+use super::stages::Stages;
 use crate::compare::{Comparison, WorkingSide, working_side};
 use crate::findings::{self, Facts, Inputs, Judgement, Limits, Report, Severity, SweptSummary, Tool};
 use crate::geometry::{Contour, Point, Segment};
@@ -22,27 +23,33 @@ use crate::view::{DiscFamily, PlanError, PlanView, plan};
 ///
 /// # Errors
 /// When an input cannot be read or judged; then nothing was written.
-pub fn check(check: &Check) -> Result<Report, Refusal> {
-    let drawing = read_drawing(&check.part, check.program.units)?;
-    let program = read_program(&check.program, drawing.value.unit)?;
+pub fn check(check: &Check, stages: &Stages) -> Result<Report, Refusal> {
+    let (drawing, program) = read_both(check, stages)?;
     let mut warnings = [drawing.problems, program.problems].concat();
     let program = program.value;
     let layers = taken(&drawing.value, &check.part.layers);
-    let Laid { contour, origins, placement, warnings: more } = lay(drawing.value, program.unit, &check.part)?;
+    let Laid { contour, origins, placement, warnings: more } =
+        stages.run("lay drawing", || lay(drawing.value, program.unit, &check.part))?;
     warnings.extend(more);
-    let view = view(&program, &check.program)?;
+    let view = stages.run("view", || view(&program, &check.program))?;
     let keep = match fixed(check.part.keep) {
         Some(keep) => keep,
-        None => found_side(&contour, &view.cutting, &program, &check.part.file)?,
+        None => stages
+            .run("find material side", || found_side(&contour, &view.cutting, &program, &check.part.file))?,
     };
-    let part = Part::new(contour, keep, check.part.allowance, origins)
-        .map_err(|e| vec![refused_part(&check.part.file, &e.to_string())])?;
+    let part = stages.run("part", || Part::new(contour, keep, check.part.allowance, origins));
+    let part = part.map_err(|e| vec![refused_part(&check.part.file, &e.to_string())])?;
     let (limits, more) = limits(check.limits, program.unit, &check.program.file);
     warnings.extend(more);
-    let swept = judge::sweep(&view.cutting, &program)?;
     let asked = (check.clear, check.only_visited);
-    let comparison = judge::compare(&part, (&view, &swept), &program, &limits, asked);
-    let judgement = findings::judge(&Facts {
+    // The figures are distances and need no swept edge: only the regions do.
+    let (swept, compared) = rayon::join(
+        || stages.run("sweep", || judge::sweep(&view.cutting, &program)),
+        || judge::compare(&part, &view, &program, &limits, asked, stages),
+    );
+    let swept = swept?;
+    let comparison = judge::with_regions(compared, &part, (&view, &swept), stages);
+    let facts = Facts {
         part: &part,
         program: &program,
         cutting: &view.cutting,
@@ -51,12 +58,15 @@ pub fn check(check: &Check) -> Result<Report, Refusal> {
         limits,
         unit: program.unit,
         top: check.program.top,
-    });
+    };
+    let judgement = stages.run("findings", || findings::judge(&facts));
     if check.only_visited && nothing_judged(&part, &comparison, &judgement) {
         return Err(vec![lies_elsewhere(judgement.warnings, &check.part.file)]);
     }
     warnings.extend(judgement.warnings);
     let inputs = inputs(check, &part, &program, &view, layers, placement);
+    // Only a picture shows how the cutter runs.
+    let drawn = check.outputs.svg.is_some();
     Ok(Report {
         unit: program.unit,
         verdict: judgement.verdict,
@@ -67,13 +77,37 @@ pub fn check(check: &Check) -> Result<Report, Refusal> {
         inputs,
         warnings,
         drawing: findings::Drawing {
-            contour: part.contour.clone(),
+            contour: part.contour,
             keep,
             swept,
-            path: view.cutting.moves.iter().map(|m| m.segment).collect(),
-            rapids: rapids(&program),
+            path: if drawn { view.cutting.moves.iter().map(|m| m.segment).collect() } else { Vec::new() },
+            rapids: if drawn { rapids(&program) } else { Vec::new() },
         },
     })
+}
+
+/// Reads drawing and program beside one another. A program that states no unit is read again when the
+/// drawing's is known: what it says in that unit may differ.
+fn read_both(check: &Check, stages: &Stages) -> Result<(Reading<Drawing>, Reading<Program>), Refusal> {
+    let (drawing, first) = rayon::join(
+        || stages.run("read drawing", || read_drawing(&check.part, check.program.units)),
+        || {
+            stages.run("read program", || {
+                let bytes = files::read(&check.program.file)?;
+                let read = understand(&check.program, &bytes, None);
+                Ok::<_, Refusal>((bytes, read))
+            })
+        },
+    );
+    let drawing = drawing?;
+    let (bytes, read) = first?;
+    let stands = check.program.units.is_some() || read.as_ref().is_ok_and(|r| r.value.unit_stated);
+    let program = if stands {
+        read?
+    } else {
+        stages.run("read program again", || understand(&check.program, &bytes, drawing.value.unit))?
+    };
+    Ok((drawing, program))
 }
 
 /// Every loop was left out as one that the program never comes near, and no rapid meets the part.
@@ -128,14 +162,22 @@ pub fn read_program(
     request: &ProgramRequest,
     drawing_unit: Option<Unit>,
 ) -> Result<Reading<Program>, Refusal> {
-    let bytes = files::read(&request.file)?;
+    understand(request, &files::read(&request.file)?, drawing_unit)
+}
+
+/// The program written in `bytes`.
+fn understand(
+    request: &ProgramRequest,
+    bytes: &[u8],
+    drawing_unit: Option<Unit>,
+) -> Result<Reading<Program>, Refusal> {
     let options = ProgramOptions {
         unit: request.units.or(drawing_unit),
         target: request.units,
         arc_tolerance: request.arc_tolerance,
         block_delete: false,
     };
-    let mut reading = judge::read_program(&bytes, &request.file, request.format, &options)?;
+    let mut reading = judge::read_program(bytes, &request.file, request.format, &options)?;
     if !reading.value.unit_stated && request.units.is_none() {
         let place = Place::file(request.file.shown());
         let Some(unit) = drawing_unit else {
@@ -164,18 +206,20 @@ pub fn view(program: &Program, request: &ProgramRequest) -> Result<PlanView, Ref
     let level = request.level.unwrap_or(request.top);
     let seen = |level| plan(program, level, |tool| request.cutters.of(tool));
     let fault = |e| vec![plan_problem(program, e)];
-    let cutting = seen(level).map_err(fault)?.cutting;
-    if cutting.moves.is_empty() {
+    let mut view = seen(level).map_err(fault)?;
+    if view.cutting.moves.is_empty() {
         return Err(vec![nothing_cuts(program, level, request.top)]);
     }
-    // A rapid between the level and the top meets the part above the level.
-    let rapids = seen(request.top).map_err(fault)?.rapids;
-    Ok(PlanView { cutting, rapids })
+    if request.level.is_some() {
+        // A rapid between the level and the top meets the part above the level.
+        view.rapids = seen(request.top).map_err(fault)?.rapids;
+    }
+    Ok(view)
 }
 
 fn block_place(program: &Program, block: BlockId) -> Place {
     match program.blocks.get(block.0 as usize) {
-        Some(b) => Place::line(&program.file, b.line, &b.text),
+        Some(b) => Place::line(&program.file, b.line, b.text),
         None => Place::file(&program.file),
     }
 }

@@ -3,7 +3,8 @@
 
 use super::args::{ClearName, ProgramFormatName};
 use super::draft::Named;
-use crate::compare::{self, Clear, Comparison, Regions, Request};
+use super::stages::Stages;
+use crate::compare::{self, Clear, Comparison, Request, attach_regions};
 use crate::envelope::{self, Clearance, SweptRegion};
 use crate::findings::{Limits, Report};
 use crate::geometry::Rect;
@@ -87,14 +88,21 @@ pub fn sweep(family: &DiscFamily, program: &Program) -> Result<SweptRegion, Refu
     })
 }
 
-/// The comparison of part and moves, with the regions cut out and left standing.
+/// A comparison, and what it was asked.
+pub struct Compared {
+    comparison: Comparison,
+    request: Request,
+}
+
+/// The comparison of part and moves; the regions are still to be found.
 pub fn compare(
     part: &Part,
-    (view, swept): (&PlanView, &SweptRegion),
+    view: &PlanView,
     program: &Program,
     limits: &Limits,
     (clear, only_visited): (ClearName, bool),
-) -> Comparison {
+    stages: &Stages,
+) -> Compared {
     let part_box = part.contour.bounds();
     let all = view.cutting.bounds().map_or(part_box, |b| b.union(part_box));
     let tolerances = Tolerances::for_extent(extent(all));
@@ -110,12 +118,26 @@ pub fn compare(
         program_bound: program.bound,
         tolerances,
     };
-    let mut comparison = compare::compare(part, &view.cutting, &view.rapids, &request);
-    comparison.deviation = compare::deviation_summary(part, &view.cutting);
+    let families = (&view.cutting, &view.rapids);
+    let comparison = compare::compare_watched(part, families, &request, stages);
+    Compared { comparison, request }
+}
+
+/// The comparison with the regions cut out and left standing, where there is anything to show.
+pub fn with_regions(
+    Compared { mut comparison, request }: Compared,
+    part: &Part,
+    (view, swept): (&PlanView, &SweptRegion),
+    stages: &Stages,
+) -> Comparison {
     if !(comparison.gouges.is_empty() && comparison.excesses.is_empty()) {
         // Swept edge and contour that agree within what both are known to are one line.
         let within = compare::figure_bound(part, &view.cutting, &request).max(swept.bound);
-        Regions::new(part, swept, &Clearance::new(&view.cutting), within).attach(&mut comparison);
+        stages.run("regions", || {
+            let radius = view.cutting.moves.iter().map(|m| m.radius).fold(0.0, f64::max);
+            let clearance = Clearance::new(&view.cutting);
+            attach_regions(part, (swept, &clearance), (within, radius), &mut comparison);
+        });
     }
     comparison
 }

@@ -66,6 +66,10 @@ pub fn lay(drawing: Drawing, unit: Unit, request: &PartRequest) -> Result<Laid, 
     }
     let mut paths: Vec<Path> = Vec::new();
     let mut origins = Vec::new();
+    let bound = drawing.contour.bound() * base.determinant().abs().sqrt();
+    if request.copies.is_empty() && motion(&request.lay) * base == Affine::IDENTITY {
+        return Ok(Laid { contour: drawing.contour, origins: drawing.origins, placement, warnings });
+    }
     for (copy, lay) in std::iter::once(&request.lay).chain(&request.copies).enumerate() {
         placement.extend(in_words(lay, copy, unit));
         let laid = drawing.contour.mapped(motion(lay) * base).ok();
@@ -81,10 +85,9 @@ pub fn lay(drawing: Drawing, unit: Unit, request: &PartRequest) -> Result<Laid, 
                 "check the shift and the units",
             )]);
         };
-        paths.extend_from_slice(contour.paths());
+        paths.append(&mut contour.into_paths());
         origins.extend_from_slice(&drawing.origins);
     }
-    let bound = drawing.contour.bound() * base.determinant().abs().sqrt();
     let contour = Contour::new(paths, bound).map_err(|e| {
         vec![Problem::error(place, e.to_string(), "", "check the drawing in a drawing program")]
     })?;

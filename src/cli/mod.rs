@@ -14,8 +14,10 @@ mod job;
 mod judge;
 mod lay;
 mod output;
+mod pending;
 mod request;
 mod run;
+mod stages;
 mod table;
 
 use std::ffi::OsString;

@@ -10,6 +10,7 @@ use tempfile::NamedTempFile;
 
 use super::args::ColorWhen;
 use super::draft::Named;
+use super::pending::Pending;
 use crate::input::{Place, Problem, Refusal};
 use crate::report::text::DEFAULT_WIDTH;
 
@@ -25,7 +26,7 @@ pub struct Rendered {
 /// A file that waits to be moved to its place.
 enum Waiting {
     /// Written beside it.
-    Beside { file: NamedTempFile, place: PathBuf },
+    Beside { pending: Pending, file: NamedTempFile, place: PathBuf },
     /// A device or a pipe: nothing to replace, it is written to as it is.
     Through { place: PathBuf, bytes: Vec<u8> },
 }
@@ -147,12 +148,13 @@ fn prepare(file: &Rendered) -> std::io::Result<Waiting> {
         _ => Path::new("."),
     };
     let mut temporary = new_beside(folder)?;
+    let pending = Pending::new(temporary.path());
     if let Some(there) = there {
         temporary.as_file().set_permissions(there.permissions())?;
     }
     temporary.write_all(&file.bytes)?;
     temporary.as_file().sync_all()?;
-    Ok(Waiting::Beside { file: temporary, place })
+    Ok(Waiting::Beside { pending, file: temporary, place })
 }
 
 /// A new file in `folder` with the rights which the user's own files get.
@@ -172,7 +174,9 @@ fn new_beside(folder: &Path) -> std::io::Result<NamedTempFile> {
 
 fn finish(file: Waiting) -> std::io::Result<()> {
     match file {
-        Waiting::Beside { file, place } => file.persist(place).map(drop).map_err(|e| e.error),
+        Waiting::Beside { pending, file, place } => {
+            pending.settle(|| file.persist(place).map(drop).map_err(|e| e.error))
+        }
         Waiting::Through { place, bytes } => {
             let mut device = fs::OpenOptions::new().write(true).open(place)?;
             match device.write_all(&bytes) {

@@ -9,6 +9,7 @@ use super::exit::Exit;
 use super::inspect;
 use super::output::{self, Rendered};
 use super::request::{self, Check, Outputs};
+use super::stages::Stages;
 use super::{files, job, judge};
 use crate::findings::{Report, Verdict};
 use crate::input::{Place, Problem, Refusal};
@@ -16,6 +17,15 @@ use crate::report::{self, SweptEdge, csv, dxf, svg};
 
 /// Does what the command line says.
 pub fn run(cli: &Cli) -> Exit {
+    let threads = match &cli.command {
+        Command::Check(args) => args.running.threads,
+        Command::Envelope(args) => args.running.threads,
+        Command::Inspect(_) | Command::Schema { .. } => None,
+    };
+    if let Err(problems) = hire(threads.unwrap_or(0)) {
+        output::complain(&problems);
+        return Exit::NotJudged;
+    }
     match &cli.command {
         Command::Check(args) => run_check(args),
         Command::Envelope(args) => settle(run_envelope(args).map(|()| Exit::Pass)),
@@ -30,6 +40,19 @@ pub fn run(cli: &Cli) -> Exit {
             settle(written.map(|()| Exit::Pass))
         }
     }
+}
+
+/// Starts the threads that do the work, 0 for as many as there are cores.
+fn hire(threads: u16) -> Result<(), Refusal> {
+    let pool = rayon::ThreadPoolBuilder::new().num_threads(usize::from(threads));
+    pool.build_global().map_err(|e| {
+        vec![Problem::error(
+            command_line(),
+            format!("the threads for the work cannot be started: {e}"),
+            "",
+            "ask for fewer with --threads, or close other programs",
+        )]
+    })
 }
 
 /// Says what went wrong, if anything did.
@@ -70,36 +93,42 @@ fn from_job(job: &Path, args: &CheckArgs) -> Result<Check, Refusal> {
 
 /// Judges one request and writes its outputs.
 fn judged(request: &Check, args: &CheckArgs, titled: bool) -> Result<Exit, Refusal> {
-    let report = check::check(request)?;
-    let outputs = render(&report, &request.outputs)?;
+    let stages = Stages::new();
+    let report = check::check(request, &stages)?;
+    let outputs = render(&report, &request.outputs, &stages)?;
     let mut text = String::new();
     if !args.quiet && !request.outputs.take_standard_output() {
         if titled {
             text = format!("== {} ==\n", request.name);
         }
-        text.push_str(&judge::text(&report, output::width(), output::colored(args.color)));
+        let (width, colored) = (output::width(), output::colored(args.color));
+        text.push_str(&stages.run("write text", || judge::text(&report, width, colored)));
         if titled {
             text.push('\n');
         }
     }
-    output::write(text.as_bytes(), outputs)?;
+    stages.stop_showing();
+    stages.run("write files", || output::write(text.as_bytes(), outputs))?;
+    if args.running.timings {
+        stages.tell();
+    }
     Ok(match report.verdict {
         Verdict::Pass => Exit::Pass,
         Verdict::Fail | Verdict::Undecided => Exit::Fail,
     })
 }
 
-fn render(report: &Report, outputs: &Outputs) -> Result<Vec<Rendered>, Refusal> {
+fn render(report: &Report, outputs: &Outputs, stages: &Stages) -> Result<Vec<Rendered>, Refusal> {
     let mut files = Vec::new();
-    let mut add = |to: &Option<Named>, bytes: &dyn Fn() -> Result<Vec<u8>, Refusal>| {
+    let mut add = |name, to: &Option<Named>, bytes: &dyn Fn() -> Result<Vec<u8>, Refusal>| {
         if let Some(to) = to {
-            files.push(Rendered { to: to.clone(), bytes: bytes()? });
+            files.push(Rendered { to: to.clone(), bytes: stages.run(name, bytes)? });
         }
         Ok::<(), Refusal>(())
     };
-    add(&outputs.json, &|| judge::json(report))?;
-    add(&outputs.svg, &|| Ok(svg::render(report).into_bytes()))?;
-    add(&outputs.dxf, &|| Ok(dxf::render(&report.drawing.swept, report.unit).into_bytes()))?;
+    add("write JSON", &outputs.json, &|| judge::json(report))?;
+    add("write SVG", &outputs.svg, &|| Ok(svg::render(report).into_bytes()))?;
+    add("write DXF", &outputs.dxf, &|| Ok(dxf::render(&report.drawing.swept, report.unit).into_bytes()))?;
     Ok(files)
 }
 
@@ -114,27 +143,33 @@ fn run_envelope(args: &EnvelopeArgs) -> Result<(), Refusal> {
         csv: args.csv.as_ref().map(here),
     };
     let asked = request::outputs(asked, &request.file, &place)?;
-    let reading = check::read_program(&request, None)?;
+    let stages = Stages::new();
+    let reading = stages.run("read program", || check::read_program(&request, None))?;
     let program = reading.value;
-    let family = check::view(&program, &request)?.cutting;
-    let swept = judge::sweep(&family, &program)?;
+    let family = stages.run("view", || check::view(&program, &request))?.cutting;
+    let swept = stages.run("sweep", || judge::sweep(&family, &program))?;
     let edge = SweptEdge { region: &swept, family: &family, program: &program };
     let mut files = Vec::new();
-    let mut add = |to: &Option<Named>, bytes: &dyn Fn() -> Result<Vec<u8>, Refusal>| {
+    let mut add = |name, to: &Option<Named>, bytes: &dyn Fn() -> Result<Vec<u8>, Refusal>| {
         if let Some(to) = to {
-            files.push(Rendered { to: to.clone(), bytes: bytes()? });
+            files.push(Rendered { to: to.clone(), bytes: stages.run(name, bytes)? });
         }
         Ok::<(), Refusal>(())
     };
-    add(&asked.json, &|| judge::edge_json(&edge))?;
-    add(&asked.svg, &|| Ok(svg::render_swept(&edge).into_bytes()))?;
-    add(&asked.dxf, &|| Ok(dxf::render(&swept, program.unit).into_bytes()))?;
-    add(&asked.csv, &|| Ok(csv::render(&swept).into_bytes()))?;
+    add("write JSON", &asked.json, &|| judge::edge_json(&edge))?;
+    add("write SVG", &asked.svg, &|| Ok(svg::render_swept(&edge).into_bytes()))?;
+    add("write DXF", &asked.dxf, &|| Ok(dxf::render(&swept, program.unit).into_bytes()))?;
+    add("write CSV", &asked.csv, &|| Ok(csv::render(&swept).into_bytes()))?;
+    stages.stop_showing();
     output::complain(&reading.problems);
     let summary = if args.quiet || asked.take_standard_output() {
         String::new()
     } else {
         inspect::swept(&swept, &program, files.is_empty())
     };
-    output::write(summary.as_bytes(), files)
+    stages.run("write files", || output::write(summary.as_bytes(), files))?;
+    if args.running.timings {
+        stages.tell();
+    }
+    Ok(())
 }

@@ -51,7 +51,7 @@ pub(super) struct Piece {
 
 /// Lower envelopes along courses, one after the other: keeps its buffers and its last answer.
 pub(super) struct Tracer<'a> {
-    targets: &'a Targets,
+    targets: &'a Targets<'a>,
     tie: f64,
     slip: f64,
     pile: Vec<u32>,
@@ -73,7 +73,7 @@ impl Interval {
 }
 
 impl<'a> Tracer<'a> {
-    pub(super) const fn new(targets: &'a Targets, tolerances: &Tolerances) -> Self {
+    pub(super) const fn new(targets: &'a Targets<'a>, tolerances: &Tolerances) -> Self {
         let (tie, slip) = (tolerances.figure, tolerances.coincidence);
         Self { targets, tie, slip, pile: Vec::new(), last: None }
     }
@@ -82,6 +82,29 @@ impl<'a> Tracer<'a> {
     pub(super) fn at_middle(&mut self, course: &Course) -> Option<(usize, f64)> {
         let found = self.targets.nearest(course.point(0.5 * course.length()), self.last);
         self.last = found.map(|f| f.0);
+        found
+    }
+
+    /// A clearance which that along the whole `course` does not exceed, when one of the targets about
+    /// the last answer shows it to be at most `enough`; and that target.
+    ///
+    /// The clearance is the least over all targets, so the greatest of any one target is above it.
+    pub(super) fn at_most(&mut self, course: &Course, enough: f64) -> Option<(usize, f64)> {
+        let length = course.length();
+        let (targets, slip, last) = (self.targets, self.slip, self.last?);
+        let bound = |k: usize| {
+            let high = targets.bounds(k, course, 0.0, length, slip).high;
+            (high <= enough).then_some((k, high))
+        };
+        // Contour and path run on side by side, one way or the other.
+        let known = bound(last)
+            .or_else(|| (last + 1 < targets.len()).then(|| bound(last + 1)).flatten())
+            .or_else(|| last.checked_sub(1).and_then(bound));
+        let found = known.or_else(|| {
+            let (k, value) = targets.nearest(course.point(0.5 * length), Some(last))?;
+            if value > enough { None } else { bound(k) }
+        });
+        self.last = found.map(|f| f.0).or(self.last);
         found
     }
 

@@ -50,8 +50,8 @@ pub(super) struct Spot {
 
 /// The openings of a part, and the sweep that has to clear them.
 pub(super) struct Floor<'a> {
-    walls: &'a Walls,
-    moves: &'a Targets,
+    walls: &'a Walls<'a>,
+    moves: &'a Targets<'a>,
     /// For each path of the contour: is what lies open beside it an opening?
     opening: Vec<bool>,
     allowance: f64,
@@ -94,7 +94,7 @@ impl<'a> Floor<'a> {
     /// The openings of `part`, less those whose outer loop is in `left_out`; `None` when it has none.
     pub(super) fn new(
         part: &Part,
-        (walls, moves): (&'a Walls, &'a Targets),
+        (walls, moves): (&'a Walls<'a>, &'a Targets<'a>),
         left_out: &[usize],
         tolerances: &Tolerances,
     ) -> Option<Self> {

@@ -6,13 +6,17 @@
 //! positive where material remains, negative where the cutter reaches past q. Negative it is a lower
 //! bound of the depth where passes overlap, and exact where one pass runs along the wall.
 
-use crate::geometry::{BoxIndex, Point, Rect};
 use crate::part::Part;
 use crate::view::DiscFamily;
 
-/// Number of places at which a contour is looked at, at least; every segment has one or more. A
-/// deviation that stays the same over most of the contour shows in far fewer.
+use super::targets::Targets;
+
+/// Number of places at which a contour is looked at, at least; every segment has one or more unless
+/// there are very many. A deviation that stays the same over most of the contour shows in far fewer.
 const PLACES: f64 = 2048.0;
+
+/// Of more segments than this several share one place: a contour of so many holds a curve in chords.
+const MANY: f64 = 16.0 * PLACES;
 
 /// Two deviations are alike when they differ by less than this fraction of their size.
 const LIKE: f64 = 0.1;
@@ -35,26 +39,31 @@ pub struct DeviationSummary {
 /// judged by its middle.
 #[must_use]
 pub fn deviation_summary(part: &Part, cutting: &DiscFamily) -> Option<DeviationSummary> {
-    let greatest = cutting.moves.iter().fold(0.0f64, |a, m| a.max(m.radius));
-    let boxes: Vec<Rect> = cutting.moves.iter().map(|m| m.segment.bounds()).collect();
-    let index = BoxIndex::new(&boxes);
-    // Shifted by the greatest radius, a clearance is never below the distance to the move's box.
-    let shifted = |p: Point, i: usize| {
-        cutting.moves.get(i).map_or(f64::INFINITY, |m| m.segment.distance(p) + (greatest - m.radius))
-    };
+    summary_of(part, &Targets::new(cutting.moves.iter().map(|m| (&m.segment, m.radius))))
+}
+
+/// [`deviation_summary`] where the moves are indexed already.
+pub(super) fn summary_of(part: &Part, moves: &Targets) -> Option<DeviationSummary> {
     let step = part.contour.length() / PLACES;
+    let many = part.contour.segments().count() as f64 > MANY;
     let mut seen: Vec<(f64, f64)> = Vec::new();
+    // Length gone by since the last place, where segments are so many that several share one.
+    let mut gone = 0.0;
     for (_, segment) in part.contour.segments() {
         let length = segment.length();
+        gone += length;
+        if many && gone < step {
+            continue;
+        }
         let pieces = (length / step).ceil().clamp(1.0, PLACES);
         for k in 0..pieces as u32 {
             let q = segment.point_at((f64::from(k) + 0.5) / pieces);
-            let Some((i, value)) = index.nearest(q, 3.0 * greatest, |i| shifted(q, i)) else { continue };
-            let clearance = value - greatest;
-            if cutting.moves.get(i).is_some_and(|m| clearance <= m.radius) {
-                seen.push((clearance - part.allowance, length / pieces));
+            let Some((i, clearance)) = moves.nearest(q, None) else { continue };
+            if clearance <= moves.radius(i) {
+                seen.push((clearance - part.allowance, gone / pieces));
             }
         }
+        gone = 0.0;
     }
     summary(seen)
 }

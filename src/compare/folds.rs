@@ -22,7 +22,9 @@
 
 use std::f64::consts::{FRAC_PI_2, PI, TAU};
 
-use crate::geometry::{BoxIndex, Crossing, Meeting, MeetingKind, Point, Rect, Segment, Turn, Vec2, crossing};
+use crate::geometry::{
+    Crossing, Meeting, MeetingKind, Point, Rect, Segment, Turn, Vec2, advancing, crossing,
+};
 use crate::tolerance::Tolerances;
 use crate::view::DiscFamily;
 
@@ -45,9 +47,14 @@ const TIGHTER_LINE: f64 = 0.02;
 
 /// The folds of the path of `family` that matter to the part, in its order. `reach` is how far
 /// beyond the cutter's radius the part still counts as touched.
-pub(super) fn folds(family: &DiscFamily, walls: &Walls, reach: f64, tolerances: &Tolerances) -> Vec<Fold> {
-    let passes = Passes::new(family);
-    let mut out: Vec<Fold> = loops(family, &passes, tolerances)
+pub(super) fn folds(
+    family: &DiscFamily,
+    passes: &Passes,
+    walls: &Walls,
+    reach: f64,
+    tolerances: &Tolerances,
+) -> Vec<Fold> {
+    let mut out: Vec<Fold> = loops(family, passes, tolerances)
         .into_iter()
         .filter(|f| loop_touches(family, walls, f, reach))
         .collect();
@@ -55,7 +62,7 @@ pub(super) fn folds(family: &DiscFamily, walls: &Walls, reach: f64, tolerances: 
         let next = loops.partition_point(|l| l.moves.0 <= m.0);
         loops[..next].last().is_some_and(|l| m.1 <= l.moves.1)
     };
-    let turns: Vec<Fold> = tight_turns(family, &passes)
+    let turns: Vec<Fold> = tight_turns(family, passes)
         .into_iter()
         .filter(|run| run.touches(family, walls, reach))
         .map(|run| run.fold(family))
@@ -192,34 +199,98 @@ fn loop_touches(family: &DiscFamily, walls: &Walls, fold: &Fold, reach: f64) -> 
 /// Places where the path crosses back over its last stretch, no longer ago than the cutter's
 /// circumference; loops do not overlap.
 fn loops(family: &DiscFamily, passes: &Passes, tolerances: &Tolerances) -> Vec<Fold> {
-    let boxes: Vec<Rect> = family.moves.iter().map(|m| m.segment.bounds()).collect();
-    let index = BoxIndex::new(&boxes);
+    let within = tolerances.coincidence;
+    let chunks = Chunks::new(family, within);
     let mut out: Vec<Fold> = Vec::new();
-    for (i, m) in family.moves.iter().enumerate() {
-        if out.last().is_some_and(|l| i < l.moves.1) {
+    let mut near = Vec::new();
+    for number in 0..chunks.list.len() {
+        chunks.later(number, family, passes, &mut near);
+        if near.is_empty() {
             continue;
         }
-        let longest = TAU * m.radius;
-        let mut later = Vec::new();
-        let window = boxes[i].inflate(tolerances.coincidence, tolerances.coincidence);
-        index.search(window, |j| {
-            if j > i && passes.same_cut(i, j) && passes.way_between(i, j) <= longest {
-                later.push(j);
-            }
-        });
-        later.sort_unstable();
-        for j in later {
-            let Some((at, way)) = crossing_back(family, passes, (i, j), tolerances.coincidence) else {
+        for i in chunks.moves(number) {
+            if out.last().is_some_and(|l| i < l.moves.1) {
                 continue;
-            };
-            if way <= longest {
+            }
+            let longest = TAU * family.moves[i].radius;
+            let window = family.moves[i].segment.bounds().inflate(within, within);
+            let back = near.iter().flat_map(|&n| chunks.moves(n)).find_map(|j| {
+                let meets = shares(window, family.moves[j].segment.bounds());
+                let close = || passes.same_cut(i, j) && passes.way_between(i, j) <= longest;
+                let found = (meets && close()).then(|| crossing_back(family, passes, (i, j), within));
+                found.flatten().filter(|(_, way)| *way <= longest).map(|(at, _)| (j, at))
+            });
+            if let Some((j, at)) = back {
                 let radius = 0.5 * width(family, i, j, at);
                 out.push(Fold { kind: FoldKind::Loop, moves: (i, j), at, radius });
-                break;
             }
         }
     }
     out
+}
+
+/// Do two boxes share a point?
+fn shares(a: Rect, b: Rect) -> bool {
+    a.x0 <= b.x1 && b.x0 <= a.x1 && a.y0 <= b.y1 && b.y0 <= a.y1
+}
+
+/// Moves in one chunk, at most.
+const CHUNK: usize = 32;
+
+/// Some moves in a row that advance one way.
+struct Chunk {
+    first: usize,
+    /// Box round them, with room for touching.
+    around: Rect,
+    /// Number of the stretch it belongs to: moves of one stretch do not cross one another
+    /// ([`advancing`]).
+    stretch: usize,
+}
+
+/// The moves of a family in chunks, in order.
+struct Chunks {
+    list: Vec<Chunk>,
+    count: usize,
+}
+
+impl Chunks {
+    fn new(family: &DiscFamily, within: f64) -> Self {
+        let moves = &family.moves;
+        let starts = advancing(moves.iter().map(|m| &m.segment), 4.0 * within);
+        let mut list = Vec::new();
+        for (stretch, &from) in starts.iter().enumerate() {
+            let to = starts.get(stretch + 1).copied().unwrap_or(moves.len());
+            for first in (from..to).step_by(CHUNK) {
+                let boxes = moves[first..(first + CHUNK).min(to)].iter().map(|m| m.segment.bounds());
+                let around = boxes.reduce(|a, b| a.union(b)).unwrap_or(Rect::ZERO).inflate(within, within);
+                list.push(Chunk { first, around, stretch });
+            }
+        }
+        Self { list, count: moves.len() }
+    }
+
+    fn moves(&self, number: usize) -> std::ops::Range<usize> {
+        let first = self.list.get(number).map_or(self.count, |c| c.first);
+        first..self.list.get(number + 1).map_or(self.count, |c| c.first)
+    }
+
+    /// Later chunks of the same cut that may cross chunk `number` no farther on than the cutter's
+    /// circumference.
+    fn later(&self, number: usize, family: &DiscFamily, passes: &Passes, out: &mut Vec<usize>) {
+        out.clear();
+        let own = &self.list[number];
+        let range = self.moves(number);
+        let radius = family.moves[range.clone()].iter().map(|m| m.radius).fold(0.0, f64::max);
+        let last = range.end - 1;
+        for (n, other) in self.list.iter().enumerate().skip(number + 1) {
+            if !passes.same_cut(last, other.first) || passes.way_between(last, other.first) > TAU * radius {
+                break;
+            }
+            if other.stretch != own.stretch && shares(own.around, other.around) {
+                out.push(n);
+            }
+        }
+    }
 }
 
 /// Where move `j` crosses the earlier move `i`, and the way along the path from there to there.

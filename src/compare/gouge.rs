@@ -38,11 +38,13 @@ pub(super) struct Reach {
 
 /// Follows moves against the contour.
 pub(super) struct Follower<'a> {
-    walls: &'a Walls,
+    walls: &'a Walls<'a>,
     tracer: Tracer<'a>,
     pieces: Vec<Piece>,
     /// Depth from which on a stretch is gathered.
     threshold: f64,
+    /// Does the last move seen end in the open, where the next one may start?
+    ends_open: Option<Point>,
     allowance: f64,
     /// Greatest depth seen, never below zero.
     pub(super) greatest: f64,
@@ -57,12 +59,13 @@ struct Part {
 }
 
 impl<'a> Follower<'a> {
-    pub(super) fn new(walls: &'a Walls, tolerances: &Tolerances, threshold: f64, allowance: f64) -> Self {
+    pub(super) fn new(walls: &'a Walls<'a>, tolerances: &Tolerances, threshold: f64, allowance: f64) -> Self {
         Self {
             walls,
             tracer: Tracer::new(&walls.targets, tolerances),
             pieces: Vec::new(),
             threshold,
+            ends_open: None,
             allowance,
             greatest: 0.0,
             found: Vec::new(),
@@ -89,7 +92,47 @@ impl<'a> Follower<'a> {
         }
     }
 
+    /// Settles a straight move that stays in the open and reaches no deeper than the threshold.
+    ///
+    /// Its depth is the radius less the least distance from the contour, which needs no pieces. A move
+    /// that starts in the open and is nowhere nearer to the contour than half its length ends there
+    /// too: it crosses nothing ([`super::targets::Targets::least_from`]).
+    fn stays_clear(&mut self, segment: &Segment, radius: f64) -> bool {
+        let Segment::Line(line) = segment else {
+            return false;
+        };
+        // No deeper than this a move tells nothing new.
+        let within = radius - self.threshold.min(self.greatest);
+        let half = 0.5 * line.length();
+        if within <= half {
+            return false;
+        }
+        let least = self.walls.targets.least_from(line, within);
+        let depth = radius - least.unwrap_or(within);
+        if least.is_some_and(|d| d <= half) || depth > self.threshold {
+            return false;
+        }
+        if self.ends_open != Some(line.start) && !self.is_open(line.start) {
+            return false;
+        }
+        self.greatest = self.greatest.max(depth);
+        self.ends_open = Some(line.end);
+        true
+    }
+
+    fn is_open(&self, p: Point) -> bool {
+        self.walls
+            .targets
+            .nearest(p, None)
+            .is_some_and(|(k, _)| self.walls.of(p, k, self.walls.targets.feature_at(k, p)) == Where::Open)
+    }
+
     fn follow_move(&mut self, position: usize, segment: &Segment, radius: f64) {
+        if self.stays_clear(segment, radius) {
+            self.close();
+            return;
+        }
+        self.ends_open = None;
         let course = Course::new(segment);
         let half = 0.5 * course.length();
         let Some((k, distance)) = self.tracer.at_middle(&course) else {

@@ -21,7 +21,7 @@ mod targets;
 mod working_side;
 
 pub use deviation::{DeviationSummary, deviation_summary};
-pub use regions::Regions;
+pub use regions::{Regions, attach_regions};
 pub use working_side::{WorkingSide, working_side};
 
 use crate::geometry::{Path, Point, Segment};
@@ -207,6 +207,30 @@ pub struct Request {
     pub tolerances: Tolerances,
 }
 
+/// Is told which stage of a comparison begins and ends, from whichever thread does it.
+pub trait Watch: Sync {
+    /// The stage `name` begins.
+    fn begins(&self, name: &'static str);
+    /// The stage `name` has ended.
+    fn ends(&self, name: &'static str);
+}
+
+/// Nobody watches.
+struct Unwatched;
+
+impl Watch for Unwatched {
+    fn begins(&self, _name: &'static str) {}
+    fn ends(&self, _name: &'static str) {}
+}
+
+/// Does `work` as the stage `name`.
+fn stage<T>(watch: &dyn Watch, name: &'static str, work: impl FnOnce() -> T) -> T {
+    watch.begins(name);
+    let done = work();
+    watch.ends(name);
+    done
+}
+
 /// Bound of every figure of a comparison, a length: what reading the drawing and the program cost,
 /// arcs whose ends lie off their circle, half of what a radius changes over one move, and arithmetic.
 #[must_use]
@@ -226,17 +250,58 @@ pub fn figure_bound(part: &Part, cutting: &DiscFamily, request: &Request) -> f64
 /// visited, and there are no figures of excess, because no distance from nothing exists.
 #[must_use]
 pub fn compare(part: &Part, cutting: &DiscFamily, rapids: &DiscFamily, request: &Request) -> Comparison {
+    compare_watched(part, (cutting, rapids), request, &Unwatched)
+}
+
+/// [`compare`], the cutting moves and the rapids given together, telling `watch` of its stages.
+#[must_use]
+pub fn compare_watched(
+    part: &Part,
+    (cutting, rapids): (&DiscFamily, &DiscFamily),
+    request: &Request,
+    watch: &dyn Watch,
+) -> Comparison {
     let changes = level::cost(cutting).max(level::cost(rapids));
     let request = &Request { program_bound: request.program_bound + changes, ..*request };
     let (cutting, rapids) = (&*level::levelled(cutting), &*level::levelled(rapids));
-    let mut out = Comparison::default();
-    let walls = Walls::new(&part.contour);
+    let walls = stage(watch, "index contour", || Walls::new(&part.contour));
     let bound = figure_bound(part, cutting, request);
-    cutter_past_contour(part, &walls, (cutting, rapids), request, &mut out);
-    let moves = Targets::new(cutting.moves.iter().map(|m| (m.segment, m.radius)));
-    if moves.is_empty() {
+    // Neither direction waits for the other; each is told apart and joined in one order.
+    let (mut out, (folds, reached)) = rayon::join(
+        || {
+            stage(watch, "gouges and rapids", || {
+                cutter_past_contour(part, &walls, (cutting, rapids), request)
+            })
+        },
+        || {
+            let passes = Passes::new(cutting);
+            let reach = request.gouge + bound;
+            let folds =
+                stage(watch, "folds", || folds::folds(cutting, &passes, &walls, reach, &request.tolerances));
+            (folds, not_reached(part, (&walls, &passes), cutting, request, watch))
+        },
+    );
+    let Some(reached) = reached else {
         out.never_visited = (0..part.contour.paths().len()).collect();
         return out;
+    };
+    Comparison { gouges: out.gouges, rapids: out.rapids, worst_gouge: out.worst_gouge, folds, ..reached }
+}
+
+/// Where the contour, and the area if asked for, are not reached; `None` when nothing cuts.
+fn not_reached(
+    part: &Part,
+    (walls, passes): (&Walls, &Passes),
+    cutting: &DiscFamily,
+    request: &Request,
+    watch: &dyn Watch,
+) -> Option<Comparison> {
+    let mut out = Comparison::default();
+    let bound = figure_bound(part, cutting, request);
+    let moves =
+        stage(watch, "index moves", || Targets::new(cutting.moves.iter().map(|m| (&m.segment, m.radius))));
+    if moves.is_empty() {
+        return None;
     }
     let judge = Judge {
         excess: request.excess,
@@ -246,23 +311,24 @@ pub fn compare(part: &Part, cutting: &DiscFamily, rapids: &DiscFamily, request: 
         radius: moves.greatest_radius(),
         only_visited: request.only_visited,
     };
-    let passes = Passes::new(cutting);
-    out.folds = folds::folds(cutting, &walls, request.gouge + bound, &request.tolerances);
-    let tracer = Tracer::new(&moves, &request.tolerances);
     let mut scanner = Scanner {
-        walls: &walls,
+        walls,
         moves: &moves,
-        passes: &passes,
-        tracer,
+        passes,
+        tracer: Tracer::new(&moves, &request.tolerances),
         limits: judge.clearances(),
         crest_from: part.allowance + bound,
+        allowance: part.allowance,
     };
-    excess::contour_not_reached(&part.contour, &mut scanner, &judge, &mut out);
+    stage(watch, "excesses and cusps", || {
+        excess::contour_not_reached(&part.contour, &mut scanner, &judge, &mut out);
+    });
     if request.clear == Clear::Area {
-        area_not_reached(part, (&walls, &moves), request, bound, &mut out);
+        stage(watch, "uncut area", || area_not_reached(part, (walls, &moves), request, bound, &mut out));
     }
     out.excesses.sort_by(|a, b| b.height.size.total_cmp(&a.height.size));
-    out
+    out.deviation = stage(watch, "deviation", || deviation::summary_of(part, &moves));
+    Some(out)
 }
 
 /// Uncut spots of the openings. A spot that holds the greatest excess of a stretch of contour, and is
@@ -322,8 +388,8 @@ fn cutter_past_contour(
     walls: &Walls,
     (cutting, rapids): (&DiscFamily, &DiscFamily),
     request: &Request,
-    out: &mut Comparison,
-) {
+) -> Comparison {
+    let mut out = Comparison::default();
     let lengths: Vec<(f64, bool)> =
         part.contour.paths().iter().map(|p| (p.length(), p.is_closed())).collect();
     let bound = figure_bound(part, cutting, request);
@@ -343,6 +409,7 @@ fn cutter_past_contour(
     let hit = follow(rapids, request.gouge.max(bound));
     out.rapids = hit.found.iter().map(|r| r.rapid(bound)).collect();
     out.rapids.sort_by(|a, b| b.depth.size.total_cmp(&a.depth.size));
+    out
 }
 
 #[cfg(test)]

@@ -12,7 +12,12 @@ use crate::envelope::{Arrangement, Choice, Clearance, Fragment, Strand, SweptReg
 use crate::geometry::{Contour, Path, Point, Segment, Vec2};
 use crate::part::{Keep, Origin, Part, nesting};
 
-use super::{Comparison, Region};
+mod near;
+
+pub use near::attach_regions;
+
+use super::{Comparison, Excess, Gouge, Region};
+use near::Windows;
 
 /// Pieces of the plane, each with a test for points.
 #[derive(Debug, Default)]
@@ -42,20 +47,44 @@ impl Regions {
     /// as one line.
     #[must_use]
     pub fn new(part: &Part, swept: &SweptRegion, clearance: &Clearance, within: f64) -> Self {
+        Self::of(part, swept, clearance, within, None)
+    }
+
+    /// Those whose outlines lie within windows, see [`near`].
+    fn within(
+        part: &Part,
+        swept: &SweptRegion,
+        clearance: &Clearance,
+        within: f64,
+        windows: &Windows,
+    ) -> Self {
+        Self::of(part, swept, clearance, within, Some(windows))
+    }
+
+    fn of(
+        part: &Part,
+        swept: &SweptRegion,
+        clearance: &Clearance,
+        within: f64,
+        windows: Option<&Windows>,
+    ) -> Self {
         let mut strands = Vec::new();
         let mut of = Vec::new();
         let mut places: Vec<Point> = Vec::new();
+        let taken = |s: &Segment| windows.is_none_or(|w| w.meets(s.bounds().inflate(within, within)));
         for edge in &swept.loops {
-            add_path(edge.pieces.iter().map(|p| p.segment), true, &mut strands, &mut places);
+            add_path(edge.pieces.iter().map(|p| p.segment), (true, &taken), &mut strands, &mut places);
         }
         of.resize(strands.len(), Of::Edge);
         for path in part.contour.paths() {
-            add_path(path.segments().iter().copied(), path.is_closed(), &mut strands, &mut places);
+            let segments = path.segments().iter().copied();
+            add_path(segments, (path.is_closed(), &taken), &mut strands, &mut places);
         }
         of.resize(strands.len(), Of::Contour);
         let kind = |i: usize| of.get(i).copied();
         let arrangement = Arrangement::between(&strands, places, within, |i, j| kind(i) != kind(j));
-        let sight = Sight { part, clearance, strands: &strands, of: &of, arrangement: &arrangement, within };
+        let sight =
+            Sight { part, clearance, strands: &strands, of: &of, arrangement: &arrangement, within, windows };
         let alike = sight.alike();
         Self {
             gouged: sight.outline(Combination::Common, &alike),
@@ -66,16 +95,27 @@ impl Regions {
     /// Gives each gouge and each excess of `comparison` the region it belongs to, where there is one.
     pub fn attach(&self, comparison: &mut Comparison) {
         for g in &mut comparison.gouges {
-            // Half the depth past the contour both the cutter and the part are there, unless the part
-            // is thinner than that.
-            let past = if g.center_inside { Vec2::ZERO } else { past_contour(g.center, g.at, g.depth.size) };
-            let probe = if g.center_inside { g.center } else { g.at + past * 0.5 };
-            g.region = find(&self.gouged, probe).or_else(|| nearest(&self.gouged, g.at)).cloned();
+            g.region = find_gouged(self, g, true).cloned();
         }
         for e in &mut comparison.excesses {
-            e.region = nearest(&self.remaining, e.at).cloned();
+            e.region = find_remaining(self, e).cloned();
         }
     }
+}
+
+/// The region of a gouge; `all` says that no region is missing.
+fn find_gouged<'a>(regions: &'a Regions, g: &Gouge, all: bool) -> Option<&'a Region> {
+    // Half the depth past the contour both the cutter and the part are there, unless the part is thinner
+    // than that.
+    let past = if g.center_inside { Vec2::ZERO } else { past_contour(g.center, g.at, g.depth.size) };
+    let probe = if g.center_inside { g.center } else { g.at + past * 0.5 };
+    // Where some regions are not known a neighbour of the one wanted could be taken for it.
+    find(&regions.gouged, probe).or_else(|| if all { nearest(&regions.gouged, g.at) } else { None })
+}
+
+/// The region of an excess.
+fn find_remaining<'a>(regions: &'a Regions, e: &Excess) -> Option<&'a Region> {
+    nearest(&regions.remaining, e.at)
 }
 
 /// Vector of length `depth` from the contour point `at`, away from the cutter's centre.
@@ -115,22 +155,33 @@ fn nearest(regions: &[Region], p: Point) -> Option<&Region> {
     best.map(|b| b.1)
 }
 
-/// Adds the segments of a path as strands that share nodes.
+/// Adds those segments of a path that are taken as strands; neighbours share nodes.
 fn add_path(
     segments: impl ExactSizeIterator<Item = Segment>,
-    closed: bool,
+    (closed, taken): (bool, &dyn Fn(&Segment) -> bool),
     strands: &mut Vec<Strand>,
     places: &mut Vec<Point>,
 ) {
-    let (first, count) = (places.len() as u32, segments.len() as u32);
-    for (k, segment) in (0u32..).zip(segments) {
-        places.push(segment.start());
-        let last = k + 1 == count;
-        if last && !closed {
-            places.push(segment.end());
+    let count = segments.len();
+    // Node at the start of the path, when its first segment is taken, and at the end of the last one.
+    let (mut first, mut last): (Option<u32>, Option<u32>) = (None, None);
+    let node = |at: Point, places: &mut Vec<Point>| {
+        places.push(at);
+        (places.len() - 1) as u32
+    };
+    for (k, segment) in segments.enumerate() {
+        if !taken(&segment) {
+            last = None;
+            continue;
         }
-        let end = if last && closed { first } else { first + k + 1 };
-        strands.push(Strand { segment, nodes: [first + k, end] });
+        let start = last.unwrap_or_else(|| node(segment.start(), places));
+        if k == 0 {
+            first = Some(start);
+        }
+        let back = first.filter(|_| closed && k + 1 == count);
+        let end = back.unwrap_or_else(|| node(segment.end(), places));
+        strands.push(Strand { segment, nodes: [start, end] });
+        last = Some(end);
     }
 }
 
@@ -153,6 +204,7 @@ struct Sight<'a> {
     of: &'a [Of],
     arrangement: &'a Arrangement,
     within: f64,
+    windows: Option<&'a Windows>,
 }
 
 impl Sight<'_> {
@@ -200,6 +252,11 @@ impl Sight<'_> {
         alike
     }
 
+    /// Has the fragment been cut by everything that meets it?
+    fn is_known(&self, f: &Fragment) -> bool {
+        self.windows.is_none_or(|w| w.holds(self.segment(f).bounds().inflate(self.within, self.within)))
+    }
+
     /// Does the fragment bound the combination?
     fn bounds(&self, f: &Fragment, alike: Alike, combination: Combination) -> bool {
         match alike {
@@ -222,7 +279,11 @@ impl Sight<'_> {
             .fragments
             .iter()
             .zip(alike)
-            .map(|(f, &a)| Choice { fragment: *f, kept: self.bounds(f, a, combination), doubt: 0.0 })
+            .map(|(f, &a)| Choice {
+                fragment: *f,
+                kept: self.is_known(f) && self.bounds(f, a, combination),
+                doubt: 0.0,
+            })
             .collect();
         let mut rings: Vec<Path> = Vec::new();
         for ring in loops(&choices, |f, t| self.segment(f).tangent_at(t)) {

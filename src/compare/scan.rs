@@ -64,13 +64,15 @@ pub(super) struct Scan {
 
 /// The questions put to every path.
 pub(super) struct Scanner<'a> {
-    pub(super) walls: &'a Walls,
-    pub(super) moves: &'a Targets,
+    pub(super) walls: &'a Walls<'a>,
+    pub(super) moves: &'a Targets<'a>,
     pub(super) passes: &'a Passes,
     pub(super) tracer: Tracer<'a>,
     pub(super) limits: [f64; 2],
     /// Clearance above which something stands at all.
     pub(super) crest_from: f64,
+    /// Stock left on purpose: clearance up to which there is no excess.
+    pub(super) allowance: f64,
 }
 
 /// A piece with the course it lies on, for looking back from the next one.
@@ -128,9 +130,16 @@ impl Scanner<'_> {
         let mut scan = Scan { least: f64::INFINITY, ..Scan::default() };
         let mut pieces = Vec::new();
         let (mut opening, mut last): (Option<Link>, Option<Link>) = (None, None);
+        let mut begun = false;
         let drawn = path.segments().iter().filter(|s| s.length() > 0.0);
         for (segment, s) in (first..).zip(drawn) {
             let course = Course::new(s);
+            if self.tells_nothing(&course, &mut scan) {
+                scan.length += course.length();
+                begun = true;
+                last = None;
+                continue;
+            }
             self.tracer.trace(&course, &mut pieces);
             let start = scan.length;
             for &piece in &pieces {
@@ -142,15 +151,15 @@ impl Scanner<'_> {
                 self.inner_peaks(&link, &mut scan);
                 match &last {
                     Some(before) => self.joint(before, &link, &mut scan),
-                    None => opening = Some(link),
+                    None if !begun => opening = Some(link),
+                    None => {}
                 }
+                begun = true;
                 last = Some(link);
             }
             scan.length += course.length();
         }
-        if let (Some(a), Some(b)) = (opening, last) {
-            self.ends(path.is_closed(), &a, &b, &mut scan);
-        }
+        self.ends(path.is_closed(), opening.as_ref(), last.as_ref(), &mut scan);
         // Only the peak over the start of a loop comes out of turn.
         scan.peaks.sort_by(|a, b| a.position.total_cmp(&b.position));
         if path.is_closed() {
@@ -158,6 +167,26 @@ impl Scanner<'_> {
             scan.over.iter_mut().for_each(|o| join_round(o, length));
         }
         scan
+    }
+
+    /// Is the clearance along the whole of `course` so small that it changes no answer?
+    ///
+    /// It does when it exceeds no limit, nor what counts as a crest, and no peak found before (or the
+    /// allowance, up to which there is no excess). Every peak on the course, its joints with its
+    /// neighbours included, is then below one that is known.
+    fn tells_nothing(&mut self, course: &Course, scan: &mut Scan) -> bool {
+        let known = scan.greatest_plain.map_or(self.allowance, |p| p.size.max(self.allowance));
+        let enough = known.min(self.lowest_limit()).min(self.crest_from);
+        let Some((k, _)) = self.tracer.at_most(course, enough) else {
+            return false;
+        };
+        let half = 0.5 * course.length();
+        let at = course.point(half);
+        let size = self.moves.clearance_of(k, at);
+        let place = Peak { position: scan.length + half, size, at, nearest: k, crest: None };
+        scan.least = scan.least.min(size);
+        keep_greater(&mut scan.greatest, place);
+        true
     }
 
     /// Enters the extremes of one piece and its parts over the limits.
@@ -244,15 +273,17 @@ impl Scanner<'_> {
     }
 
     /// The joint over the start of a loop, or the two ends of a chain.
-    fn ends(&self, closed: bool, opening: &Link, last: &Link, scan: &mut Scan) {
+    fn ends(&self, closed: bool, opening: Option<&Link>, last: Option<&Link>, scan: &mut Scan) {
         if closed {
-            self.joint(last, opening, scan);
+            if let (Some(opening), Some(last)) = (opening, last) {
+                self.joint(last, opening, scan);
+            }
             return;
         }
-        if opening.piece.law.slope(opening.piece.from) <= LEVEL {
+        if let Some(opening) = opening.filter(|o| o.piece.law.slope(o.piece.from) <= LEVEL) {
             scan.note(opening.peak(opening.piece.from), self.lowest_limit());
         }
-        if last.piece.law.slope(last.piece.to) >= -LEVEL {
+        if let Some(last) = last.filter(|l| l.piece.law.slope(l.piece.to) >= -LEVEL) {
             scan.note(last.peak(last.piece.to), self.lowest_limit());
         }
     }

@@ -11,14 +11,14 @@ use crate::geometry::{Contour, Line, Point, Segment, Side, Vec2, orientation};
 
 use super::targets::{Feature, Targets};
 
-/// Sines of turns smaller than this are taken as no turn: both neighbours then give the same side.
+/// Sines of turns smaller than this are taken as no turn, where the path turns back on itself.
 const STRAIGHT: f64 = 1e-9;
 
 /// The contour made ready for questions: its segments as targets, each knowing its path, its place
 /// on it and its neighbours. Segments without length are left out: they have no side.
-pub(super) struct Walls {
+pub(super) struct Walls<'a> {
     /// The segments as targets without radius.
-    pub(super) targets: Targets,
+    pub(super) targets: Targets<'a>,
     /// Position of each segment's path in the contour.
     path: Vec<u32>,
     /// Length of its path before each segment.
@@ -36,15 +36,15 @@ pub(super) enum Where {
     Open,
 }
 
-impl Walls {
-    pub(super) fn new(contour: &Contour) -> Self {
-        let mut segments: Vec<Segment> = Vec::new();
+impl<'a> Walls<'a> {
+    pub(super) fn new(contour: &'a Contour) -> Self {
+        let mut segments: Vec<&Segment> = Vec::new();
         let (mut paths, mut along, mut neighbours) = (Vec::new(), Vec::new(), Vec::new());
         for (position, path) in (0u32..).zip(contour.paths()) {
             let first = segments.len();
             let mut length = 0.0;
             for s in path.segments().iter().filter(|s| s.length() > 0.0) {
-                segments.push(*s);
+                segments.push(s);
                 paths.push(position);
                 along.push(length);
                 length += s.length();
@@ -85,7 +85,7 @@ impl Walls {
         self.turn_at(k, Feature::End)
     }
 
-    fn segment(&self, k: usize) -> &Segment {
+    fn segment(&self, k: usize) -> &'a Segment {
         self.targets.segment(k)
     }
 
@@ -136,13 +136,35 @@ fn left_of_ray(from: Point, direction: Vec2, p: Point) -> bool {
 fn left_of_joint(a: &Segment, b: &Segment, p: Point) -> bool {
     let (t, u) = (a.tangent_at(1.0), b.tangent_at(0.0));
     let turn = t.cross(u);
-    if turn.abs() > STRAIGHT {
-        turn < 0.0
-    } else if t.dot(u) >= 0.0 {
+    if t.dot(u) >= 0.0 {
+        // The normal cone lies about the normal of the mean direction, however small the turn: its own
+        // sign is noise beside an arc not much longer than the rounding of its ends.
         left_of_ray(b.start(), t + u, p)
+    } else if turn.abs() > STRAIGHT {
+        turn < 0.0
     } else {
         // The path turns back on itself: a horn of material when it is curved away to the right on the
         // way in and back, else a notch.
         a.curvature() + b.curvature() >= 0.0
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::geometry::Path;
+
+    #[test]
+    fn at_a_joint_that_turns_by_rounding_only_the_side_is_that_of_its_neighbours() {
+        for lift in [-1e-7, -1e-11, 0.0, 1e-11, 1e-7] {
+            let points = [(0.0, 0.0), (5.0, 0.0), (10.0, lift)].map(|(x, y)| Point::new(x, y));
+            let lines = points.windows(2).map(|w| Segment::line(w[0], w[1])).collect();
+            let contour = Contour::new(vec![Path::new(lines, false).unwrap()], 0.0).unwrap();
+            let walls = Walls::new(&contour);
+            for (k, feature) in [(0, Feature::End), (1, Feature::Start)] {
+                assert_eq!(walls.of(Point::new(5.0, 3.0), k, feature), Where::Material, "{lift}");
+                assert_eq!(walls.of(Point::new(5.0, -3.0), k, feature), Where::Open, "{lift}");
+            }
+        }
     }
 }

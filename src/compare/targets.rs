@@ -21,8 +21,8 @@ pub(super) enum Feature {
 }
 
 /// Segments with radii, and an index over them.
-pub(super) struct Targets {
-    segments: Vec<Segment>,
+pub(super) struct Targets<'a> {
+    segments: Vec<&'a Segment>,
     radii: Vec<f64>,
     index: BoxIndex,
     greatest_radius: f64,
@@ -39,10 +39,10 @@ pub(super) struct Bounds {
     pub(super) law: Option<(Feature, Law)>,
 }
 
-impl Targets {
+impl<'a> Targets<'a> {
     /// Targets `segments`, each swept by a disc of the radius given.
-    pub(super) fn new(items: impl Iterator<Item = (Segment, f64)>) -> Self {
-        let (segments, radii): (Vec<_>, Vec<_>) = items.unzip();
+    pub(super) fn new(items: impl Iterator<Item = (&'a Segment, f64)>) -> Self {
+        let (segments, radii): (Vec<&Segment>, Vec<f64>) = items.unzip();
         let boxes: Vec<Rect> = segments
             .iter()
             .map(|s| {
@@ -50,16 +50,22 @@ impl Targets {
                 s.bounds().union_pt(s.start()).union_pt(s.end())
             })
             .collect();
-        let residual = segments.iter().map(residual).fold(0.0, f64::max);
+        let residual = segments.iter().map(|s| residual(s)).fold(0.0, f64::max);
         let greatest_radius = radii.iter().copied().fold(0.0, f64::max);
         Self { segments, radii, index: BoxIndex::new(&boxes), greatest_radius, residual }
+    }
+
+    /// Targets of a test, which keeps them to its end.
+    #[cfg(test)]
+    pub(super) fn of(items: impl Iterator<Item = (Segment, f64)>) -> Targets<'static> {
+        let kept: &'static [(Segment, f64)] = Box::leak(items.collect::<Vec<_>>().into_boxed_slice());
+        Targets::new(kept.iter().map(|(s, r)| (s, *r)))
     }
 
     pub(super) fn is_empty(&self) -> bool {
         self.segments.is_empty()
     }
 
-    #[cfg(test)]
     pub(super) fn len(&self) -> usize {
         self.segments.len()
     }
@@ -74,8 +80,8 @@ impl Targets {
         self.residual
     }
 
-    pub(super) fn segment(&self, k: usize) -> &Segment {
-        &self.segments[k]
+    pub(super) fn segment(&self, k: usize) -> &'a Segment {
+        self.segments[k]
     }
 
     pub(super) fn radius(&self, k: usize) -> f64 {
@@ -95,6 +101,33 @@ impl Targets {
         let within = guess.map_or(f64::INFINITY, |g| g.1);
         let found = self.index.nearest(p, within, lifted).or(guess);
         found.map(|(k, d)| (k, d - shift))
+    }
+
+    /// Least distance of the straight `line` from any target, not counting radii, when it is below
+    /// `within`.
+    ///
+    /// Two segments that do not cross are nearest to one another at an end of one of them, or, line
+    /// beside arc, at the foot of the arc's centre. A target that crosses the line is at most half the
+    /// line's length away from one of its ends: a greater answer is therefore the least distance, and
+    /// tells that nothing crosses.
+    pub(super) fn least_from(&self, line: &Line, within: f64) -> Option<f64> {
+        let own = Segment::Line(*line);
+        let apart = |k: usize| {
+            let other = self.segments[k];
+            let of_line = other.distance(line.start).min(other.distance(line.end));
+            let mut least = of_line.min(own.distance(other.start()));
+            // Where the next target starts there it is asked about that point itself: the point lies in
+            // its box.
+            let end = other.end();
+            if self.segments.get(k + 1).is_none_or(|next| next.start() != end) {
+                least = least.min(own.distance(end));
+            }
+            match other {
+                Segment::Line(_) => least,
+                Segment::Arc(a) => least.min(other.distance(own.nearest(a.center()).at)),
+            }
+        };
+        self.index.nearest_to_box(own.bounds(), within, apart).map(|found| found.1)
     }
 
     /// Calls `visit` with every target whose distance from `p`, less its radius, may be at most `reach`.
@@ -122,7 +155,7 @@ impl Targets {
     /// taken without its ends: the whole line, the whole circle.
     pub(super) fn law(&self, k: usize, feature: Feature, course: &Course) -> Law {
         let less = self.radii[k];
-        match (feature, &self.segments[k]) {
+        match (feature, self.segments[k]) {
             (Feature::Start, s) => Law { wave: course.distance_to(s.start()), circle: 0.0, less },
             (Feature::End, s) => Law { wave: course.distance_to(s.end()), circle: 0.0, less },
             (Feature::Inside, Segment::Line(l)) => {
@@ -139,7 +172,7 @@ impl Targets {
     /// Which feature of target `k` is the nearest over the whole of [lo, hi]; `None` when it changes.
     /// A feature may be overrun by `slip`.
     fn feature_over(&self, k: usize, course: &Course, lo: f64, hi: f64, slip: f64) -> Option<Feature> {
-        match &self.segments[k] {
+        match self.segments[k] {
             Segment::Line(l) => {
                 let length = l.length();
                 if length <= 0.0 {
@@ -188,7 +221,7 @@ impl Targets {
     /// Places strictly inside (lo, hi) where the nearest feature of target `k` may change.
     pub(super) fn changes(&self, k: usize, course: &Course, lo: f64, hi: f64) -> Places {
         let mut out = Places::new();
-        match &self.segments[k] {
+        match self.segments[k] {
             Segment::Line(l) => {
                 let wave = course.component(l.tangent(), l.start);
                 wave.solve(0.0, lo, hi, &mut out);
@@ -218,7 +251,7 @@ impl Targets {
         let way = hi - lo;
         let whole = self.law(k, Feature::Inside, course).range(lo, hi).0;
         let low = whole.max(0.5 * (a + b - way));
-        let straight = matches!((course, &self.segments[k]), (Course::Line { .. }, Segment::Line(_)));
+        let straight = matches!((course, self.segments[k]), (Course::Line { .. }, Segment::Line(_)));
         // The distance from a convex set is convex along a line.
         let high = if straight { a.max(b) } else { 0.5 * (a + b + way) };
         Bounds { low, high, law: None }

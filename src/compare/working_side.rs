@@ -53,11 +53,26 @@ pub fn working_side(contour: &Contour, cutting: &DiscFamily) -> WorkingSide {
         return WorkingSide::LoopsAndChains;
     };
     let contour = Beside::new(&part.contour);
+    // The last place, how far it lies from the contour, and whether it lies in the material.
+    let mut last: Option<(Point, f64, bool)> = None;
     // Places found in what would be material under `material_here`, and beside it.
     let (mut inside, mut beside) = (None, None);
     for (position, m) in cutting.moves.iter().enumerate() {
-        contour.places(&m.segment, ON * m.radius, |p| {
-            let slot = if part.contains(p) { &mut inside } else { &mut beside };
+        // Within a disc that the contour does not enter all is on one side, as the last place was: of
+        // loops there is nothing new to learn there.
+        let free = |p: Point| last.filter(|(q, d, _)| loops > 0 && (p - *q).hypot() < 0.999 * d);
+        if free(m.segment.start()).is_some()
+            && free(m.segment.end()).is_some()
+            && matches!(m.segment, Segment::Line(_))
+        {
+            continue;
+        }
+        contour.places(&m.segment, ON * m.radius, |p, d| {
+            // Two discs free of the contour that overlap lie on one side.
+            let near = last.filter(|(q, e, _)| loops > 0 && (p - *q).hypot() < 0.999 * (d + e));
+            let material = near.map_or_else(|| part.contains(p), |n| n.2);
+            last = Some((p, d, material));
+            let slot = if material { &mut inside } else { &mut beside };
             slot.get_or_insert((p, position));
         });
         if let (Some(second), Some(first)) = (inside, beside) {
@@ -91,8 +106,9 @@ impl Beside {
         Self { segments, index: BoxIndex::new(&boxes), free_ends }
     }
 
-    /// Calls `visit` with a point of each piece of `path` that lies on one side altogether.
-    fn places(&self, path: &Segment, on: f64, mut visit: impl FnMut(Point)) {
+    /// Calls `visit` with a point of each piece of `path` that lies on one side altogether, and with
+    /// its distance from the contour.
+    fn places(&self, path: &Segment, on: f64, mut visit: impl FnMut(Point, f64)) {
         let length = path.length();
         let mut pile = vec![(0.0, 1.0)];
         while let Some((from, to)) = pile.pop() {
@@ -103,7 +119,7 @@ impl Beside {
             let Some((nearest, d)) = self.index.nearest(p, f64::INFINITY, distance) else { return };
             if d > half.max(on) {
                 if !self.is_beyond_an_end(p, nearest, d) {
-                    visit(p);
+                    visit(p, d);
                 }
             } else if half > on {
                 pile.push((middle, to));

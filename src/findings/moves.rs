@@ -171,7 +171,7 @@ impl<'a> Cuts<'a> {
         let source = self.moves.get(i)?.source;
         let commanded = self.program.moves.get(usize::try_from(source.0).ok()?)?;
         let block = self.program.blocks.get(usize::try_from(commanded.block.0).ok()?)?;
-        let text = block.text.clone();
+        let text = block.text.to_owned();
         Some(BlockRef { file: self.program.file.clone(), line: block.line, text })
     }
 

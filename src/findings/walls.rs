@@ -4,6 +4,8 @@
 //! Material lies on the left of every segment (see [`crate::part::Part`]), so the cutter works on the
 //! right: a turn to the right is an inside corner, an arc that turns right an inside fillet.
 
+use std::sync::OnceLock;
+
 use crate::compare::ContourStretch;
 use crate::geometry::{BoxIndex, Contour, Point, Rect, Segment, Vec2};
 
@@ -18,7 +20,8 @@ pub(super) struct Walls<'a> {
     /// Position of each path's first segment; one more entry than paths.
     firsts: Vec<usize>,
     lengths: Vec<f64>,
-    index: BoxIndex,
+    /// Made when it is first asked: a part without findings never is.
+    index: OnceLock<BoxIndex>,
     extent: f64,
 }
 
@@ -34,7 +37,6 @@ pub(super) struct Reach {
 impl<'a> Walls<'a> {
     pub(super) fn new(contour: &'a Contour) -> Self {
         let segments: Vec<(usize, &Segment)> = contour.segments().collect();
-        let boxes: Vec<Rect> = segments.iter().map(|s| s.1.bounds()).collect();
         let mut firsts = vec![0];
         for path in contour.paths() {
             firsts.push(firsts.last().copied().unwrap_or(0) + path.segments().len());
@@ -42,7 +44,14 @@ impl<'a> Walls<'a> {
         let lengths = contour.paths().iter().map(|p| p.length()).collect();
         let b = contour.bounds();
         let extent = [b.x0, b.x1, b.y0, b.y1].iter().fold(0.0f64, |a, v| a.max(v.abs()));
-        Self { contour, segments, firsts, lengths, index: BoxIndex::new(&boxes), extent }
+        Self { contour, segments, firsts, lengths, index: OnceLock::new(), extent }
+    }
+
+    fn index(&self) -> &BoxIndex {
+        self.index.get_or_init(|| {
+            let boxes: Vec<Rect> = self.segments.iter().map(|s| s.1.bounds()).collect();
+            BoxIndex::new(&boxes)
+        })
     }
 
     pub(super) const fn contour(&self) -> &'a Contour {
@@ -68,7 +77,7 @@ impl<'a> Walls<'a> {
             Some((of, s)) if path.is_none_or(|wanted| wanted == *of) => s.distance(p),
             _ => f64::INFINITY,
         };
-        self.index.nearest(p, f64::INFINITY, distance).map(|n| n.0)
+        self.index().nearest(p, f64::INFINITY, distance).map(|n| n.0)
     }
 
     /// The segment after (`forward`) or before this one on its path.
@@ -94,7 +103,7 @@ impl<'a> Walls<'a> {
         let slack = 1e-6 * most + 4e-13 * self.extent;
         let blocked = |radius: f64| {
             let center = q + right * radius;
-            self.index
+            self.index()
                 .nearest(center, radius, |k| self.segment(k).map_or(f64::INFINITY, |s| s.distance(center)))
                 .filter(|n| n.1 < radius - slack)
         };

@@ -53,6 +53,21 @@ impl Contour {
         &self.paths
     }
 
+    /// The loops and chains, taken out of the contour.
+    #[must_use]
+    pub fn into_paths(self) -> Vec<Path> {
+        self.paths
+    }
+
+    /// The contour with those paths reversed for which `turns` says so, by position.
+    #[must_use]
+    pub fn with_turned(mut self, turns: &[bool]) -> Self {
+        for (path, _) in self.paths.iter_mut().zip(turns).filter(|(_, turn)| **turn) {
+            path.reverse();
+        }
+        self
+    }
+
     /// Greatest distance between this contour and the curves it was read from: zero where the drawing
     /// holds lines and arcs.
     #[must_use]

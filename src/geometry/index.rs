@@ -130,10 +130,28 @@ impl BoxIndex {
     /// The item nearest to `p` among those nearer than `within`, by `distance(item)`, which must not
     /// be less than the distance of `p` from the item's box. Equal distances: the lowest position.
     #[must_use]
-    pub fn nearest(
+    pub fn nearest(&self, p: Point, within: f64, distance: impl FnMut(usize) -> f64) -> Option<(usize, f64)> {
+        self.least(within, |b| distance_to(b, p), distance)
+    }
+
+    /// The item nearest to something that lies in `window`, as [`Self::nearest`]: `distance(item)` must
+    /// not be less than the distance between the window and the item's box.
+    #[must_use]
+    pub fn nearest_to_box(
         &self,
-        p: Point,
+        window: Rect,
         within: f64,
+        distance: impl FnMut(usize) -> f64,
+    ) -> Option<(usize, f64)> {
+        self.least(within, |b| distance_between(b, window), distance)
+    }
+
+    /// The item of least `distance` below `within`, where that of no item is less than `lower` of any
+    /// box round it.
+    fn least(
+        &self,
+        within: f64,
+        lower_bound: impl Fn(Rect) -> f64,
         mut distance: impl FnMut(usize) -> f64,
     ) -> Option<(usize, f64)> {
         if self.is_empty() {
@@ -144,7 +162,7 @@ impl BoxIndex {
         let mut pile = [(0.0f64, 0u32, 0u32); PILE];
         let mut high = 1;
         let root = self.boxes.len() - 1;
-        pile[0] = (distance_to(self.boxes[root], p), self.levels.len() as u32 - 2, root as u32);
+        pile[0] = (lower_bound(self.boxes[root]), self.levels.len() as u32 - 2, root as u32);
         while high > 0 {
             high -= 1;
             let (lower, level, node) = pile[high];
@@ -163,7 +181,7 @@ impl BoxIndex {
             }
             let from = high;
             for child in self.children(level as usize, node as usize) {
-                let d = distance_to(self.boxes[child], p);
+                let d = lower_bound(self.boxes[child]);
                 if d <= limit {
                     pile[high] = (d, level - 1, child as u32);
                     high += 1;
@@ -185,6 +203,13 @@ fn meets(a: Rect, b: Rect) -> bool {
 fn distance_to(b: Rect, p: Point) -> f64 {
     let dx = (b.x0 - p.x).max(p.x - b.x1).max(0.0);
     let dy = (b.y0 - p.y).max(p.y - b.y1).max(0.0);
+    (dx * dx + dy * dy).sqrt()
+}
+
+/// Distance between two boxes, 0 where they meet.
+fn distance_between(a: Rect, b: Rect) -> f64 {
+    let dx = (a.x0 - b.x1).max(b.x0 - a.x1).max(0.0);
+    let dy = (a.y0 - b.y1).max(b.y0 - a.y1).max(0.0);
     (dx * dx + dy * dy).sqrt()
 }
 
@@ -259,6 +284,23 @@ mod tests {
                 let scan = all.iter().map(|b| distance_to(*b, p)).fold(f64::INFINITY, f64::min);
                 let found = index.nearest(p, f64::INFINITY, |i| distance_to(all[i], p));
                 assert_eq!(found.map(|f| f.1), Some(scan));
+            }
+        }
+    }
+
+    #[test]
+    fn nearest_to_a_box_is_the_nearest_of_a_scan() {
+        for n in [1, 9, 65, 1000] {
+            let all = boxes(n);
+            let index = BoxIndex::new(&all);
+            for k in 0..50 {
+                let p = Point::new(f64::from(k) * 2.3, 110.0 - f64::from(k) * 2.1);
+                let window = Rect::from_points(p, p + kurbo::Vec2::new(1.5, -0.5 * f64::from(k)));
+                let scan = all.iter().map(|b| distance_between(*b, window)).fold(f64::INFINITY, f64::min);
+                let found = index.nearest_to_box(window, f64::INFINITY, |i| distance_between(all[i], window));
+                assert_eq!(found.map(|f| f.1), Some(scan));
+                let nearer = index.nearest_to_box(window, scan * 0.9, |i| distance_between(all[i], window));
+                assert_eq!(nearer, None);
             }
         }
     }

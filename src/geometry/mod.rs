@@ -6,6 +6,7 @@
 //! Points, vectors, boxes and affine maps are [`kurbo`]'s; where the side of a line decides topology
 //! the exact predicate of [`geo`] decides it ([`orientation`]).
 
+mod advance;
 mod arc;
 mod biarc;
 mod chords;
@@ -18,6 +19,7 @@ mod nearest;
 mod path;
 mod segment;
 
+pub(crate) use advance::advancing;
 pub use arc::{Arc, ArcError, Turn};
 pub use biarc::{
     Approximation, Curve, CurveError, Enclosure, cubic_to_arcs, curve_to_arcs, ellipse_to_arcs, quad_to_arcs,

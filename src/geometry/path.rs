@@ -77,6 +77,12 @@ impl Path {
         &self.segments
     }
 
+    /// The segments, taken out of the chain.
+    #[must_use]
+    pub fn into_segments(self) -> Vec<Segment> {
+        self.segments
+    }
+
     /// Does it end where it began, as a loop?
     #[must_use]
     pub const fn is_closed(&self) -> bool {
@@ -111,7 +117,15 @@ impl Path {
     /// The same chain travelled the other way.
     #[must_use]
     pub fn reversed(&self) -> Self {
-        Self { segments: self.segments.iter().rev().map(Segment::reversed).collect(), closed: self.closed }
+        let mut turned = self.clone();
+        turned.reverse();
+        turned
+    }
+
+    /// Travels the chain the other way.
+    pub fn reverse(&mut self) {
+        self.segments.reverse();
+        self.segments.iter_mut().for_each(|s| *s = s.reversed());
     }
 
     /// The chain under a map that keeps shapes.

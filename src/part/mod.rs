@@ -6,6 +6,8 @@ mod sides;
 
 pub use nesting::{Nest, nesting, oriented};
 
+use std::sync::OnceLock;
+
 use crate::geometry::{Contour, Point};
 use sides::Sides;
 
@@ -110,7 +112,8 @@ pub struct Part {
     pub allowance: f64,
     /// Provenance of each path of the contour, in its order.
     pub origins: Vec<Origin>,
-    sides: Sides,
+    /// Made when it is first asked: most parts never are.
+    sides: OnceLock<Sides>,
 }
 
 impl PartialEq for Part {
@@ -156,9 +159,8 @@ impl Part {
                 });
             }
         }
-        let contour = oriented(&contour, keep);
-        let sides = Sides::new(&contour);
-        Ok(Self { contour, keep, allowance, origins, sides })
+        let contour = nesting::turned(contour, keep);
+        Ok(Self { contour, keep, allowance, origins, sides: OnceLock::new() })
     }
 
     /// Is `p` in the material? For loops by the parity of the contour's crossings with a ray, decided
@@ -168,11 +170,12 @@ impl Part {
     /// segment which the ray meets.
     #[must_use]
     pub fn contains(&self, p: Point) -> bool {
+        let sides = self.sides.get_or_init(|| Sides::new(&self.contour));
         match self.keep {
-            Keep::Inside => self.sides.loops_round(p),
-            Keep::Outside => !self.sides.loops_round(p),
+            Keep::Inside => sides.loops_round(p),
+            Keep::Outside => !sides.loops_round(p),
             // Right-hand chains were reversed: material is on the left of either.
-            Keep::Left | Keep::Right => self.sides.is_left_of_nearest(p),
+            Keep::Left | Keep::Right => sides.is_left_of_nearest(p),
         }
     }
 }

@@ -70,19 +70,25 @@ fn clear_point(sides: &Sides, position: usize, path: &Path) -> Point {
 /// chains are reversed under [`Keep::Right`]. Paths of which `keep` does not speak stay as they are.
 #[must_use]
 pub fn oriented(contour: &Contour, keep: Keep) -> Contour {
-    let nests = if keep.is_for_loops() { nesting(contour) } else { Vec::new() };
+    turned(contour.clone(), keep)
+}
+
+/// [`oriented`], for a contour that is not needed any more as it was.
+pub(super) fn turned(contour: Contour, keep: Keep) -> Contour {
+    let nests = if keep.is_for_loops() { nesting(&contour) } else { Vec::new() };
     let depth = |i: usize| nests.get(i).map_or(0, |n| n.depth);
-    let paths = contour.paths().iter().enumerate().map(|(i, path)| {
-        let turn = match keep {
+    let turns: Vec<bool> = contour
+        .paths()
+        .iter()
+        .enumerate()
+        .map(|(i, path)| match keep {
             Keep::Inside | Keep::Outside if path.is_closed() => {
                 let wanted_left = (depth(i) % 2 == 0) == (keep == Keep::Inside);
                 (path.signed_area() > 0.0) != wanted_left
             }
             Keep::Right => !path.is_closed(),
             _ => false,
-        };
-        if turn { path.reversed() } else { path.clone() }
-    });
-    // The paths of a contour make a contour again: neither empty nor with another bound.
-    Contour::new(paths.collect(), contour.bound()).unwrap_or_else(|_| contour.clone())
+        })
+        .collect();
+    contour.with_turned(&turns)
 }

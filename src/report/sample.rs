@@ -257,7 +257,7 @@ pub fn swept() -> SweptSample {
             unit: Unit::Millimetre,
             unit_stated: true,
             says_z: false,
-            blocks: vec![Block { line: 7, text: "N10 G1 X30 Y0".into() }],
+            blocks: std::iter::once(Block { line: 7, text: "N10 G1 X30 Y0" }).collect(),
             moves: vec![made],
             bound: 0.0,
         },

@@ -24,7 +24,7 @@ impl<'a> SweptEdge<'a> {
 
     /// The block that commands the move `index`.
     #[must_use]
-    pub fn block(&self, index: MoveIndex) -> Option<&'a Block> {
+    pub fn block(&self, index: MoveIndex) -> Option<Block<'a>> {
         let at = usize::try_from(index.0).ok()?;
         let block = self.program.moves.get(at)?.block;
         self.program.blocks.get(usize::try_from(block.0).ok()?)

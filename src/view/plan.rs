@@ -49,6 +49,7 @@ pub fn plan(
 ) -> Result<PlanView, PlanError> {
     let level = if program.says_z { level } else { f64::INFINITY };
     let mut view = PlanView::default();
+    view.cutting.moves.reserve(program.moves.len());
     let mut pieces = Vec::new();
     for (source, m) in (0u32..).zip(&program.moves) {
         if m.kind == MoveKind::Rapid && !program.says_z {
@@ -70,6 +71,7 @@ pub fn plan(
             .moves
             .extend(pieces.iter().map(|&segment| DiscMove::constant(segment, radius, MoveIndex(source))));
     }
+    view.cutting.moves.shrink_to_fit();
     Ok(view)
 }
 
@@ -184,7 +186,7 @@ mod tests {
             unit: Unit::Millimetre,
             unit_stated: true,
             says_z: true,
-            blocks: vec![Block { line: 1, text: "G1".into() }],
+            blocks: std::iter::once(Block { line: 1, text: "G1" }).collect(),
             moves,
             bound: 0.0,
         }

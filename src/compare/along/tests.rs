@@ -58,7 +58,7 @@ fn pieces_follow_the_least_distance_of_random_and_lattice_segments() {
     for case in 0..1500 {
         let lattice = case % 2 == 1;
         let count = 1 + rng.usize(..20);
-        let targets = Targets::new((0..count).map(|_| {
+        let targets = Targets::of((0..count).map(|_| {
             let radius = if lattice { 1.0 } else { rng.f64() };
             (segment(&mut rng, lattice), radius)
         }));
@@ -71,7 +71,7 @@ fn pieces_follow_the_least_distance_of_random_and_lattice_segments() {
 fn greatest_and_least_of_a_course_are_those_of_a_dense_scan() {
     let mut rng = random(5);
     for _ in 0..60 {
-        let targets = Targets::new((0..8).map(|_| (segment(&mut rng, false), 0.5)));
+        let targets = Targets::of((0..8).map(|_| (segment(&mut rng, false), 0.5)));
         let course = Course::new(&segment(&mut rng, false));
         let mut pieces = Vec::new();
         Tracer::new(&targets, &Tolerances::for_extent(10.0)).trace(&course, &mut pieces);
@@ -100,7 +100,7 @@ fn level_and_retraced_functions_need_few_pieces() {
         })
         .collect();
     let back = once.iter().rev().map(Segment::reversed);
-    let targets = Targets::new(once.iter().copied().chain(back).map(|s| (s, 5.0)));
+    let targets = Targets::of(once.iter().copied().chain(back).map(|s| (s, 5.0)));
     let course = Course::new(&Segment::line(Point::new(0.0, 0.0), Point::new(100.0, 0.0)));
     let mut pieces = Vec::new();
     let begin = std::time::Instant::now();
@@ -123,7 +123,7 @@ fn copies_that_differ_by_little_are_settled_without_dividing_to_the_tie() {
                 let turn = Affine::rotate((rng.f64() - 0.5) * off);
                 (base[i % base.len()].mapped(shift * turn).unwrap(), 0.5)
             });
-            let targets = Targets::new(copies);
+            let targets = Targets::of(copies);
             let course = Course::new(&segment(&mut rng, false));
             let count = check(&course, &targets, &format!("{off} case {case}"));
             assert!(count < 1000, "{off} case {case}: {count} pieces");
@@ -137,7 +137,7 @@ fn concentric_arc_of_chords_is_followed_without_dividing_to_the_tie() {
         (0..=n).map(move |i| (Vec2::from_angle(f64::from(i) / f64::from(n) * 3.0) * 20.0).to_point())
     };
     let points: Vec<Point> = corners(5000).collect();
-    let targets = Targets::new(points.windows(2).map(|w| (Segment::line(w[0], w[1]), 5.0)));
+    let targets = Targets::of(points.windows(2).map(|w| (Segment::line(w[0], w[1]), 5.0)));
     let course = Course::new(&Segment::Arc(Arc::from_angles(Point::ZERO, 15.0, 0.0, 3.0).unwrap()));
     let mut pieces = Vec::new();
     Tracer::new(&targets, &Tolerances::for_extent(100.0)).trace(&course, &mut pieces);
@@ -161,7 +161,7 @@ fn farthest_point_of_an_edge_is_found_between_its_ends() {
     let a = chain(&[(26.0, 8.0), (13.0, -2.0), (13.0, 19.0), (10.0, 19.0), (10.0, 23.0), (1.0, 17.0)]);
     let b = chain(&[(15.0, 1.0), (28.0, 11.0), (13.0, 26.0), (1.0, 18.0)]);
     let farthest = |from: &[Segment], to: &[Segment]| {
-        let targets = Targets::new(to.iter().map(|s| (*s, 0.0)));
+        let targets = Targets::of(to.iter().map(|s| (*s, 0.0)));
         let mut pieces = Vec::new();
         let mut greatest = 0.0f64;
         for s in from {

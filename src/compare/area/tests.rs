@@ -21,7 +21,7 @@ fn spots(found: &Comparison) -> Vec<f64> {
 /// Every point of a grid over the part's box that is open and stands above `limit` lies in a spot's box.
 fn check_grid(part: &Part, cutting: &DiscFamily, limit: f64) {
     let walls = Walls::new(&part.contour);
-    let moves = Targets::new(cutting.moves.iter().map(|m| (m.segment, m.radius)));
+    let moves = Targets::of(cutting.moves.iter().map(|m| (m.segment, m.radius)));
     let floor = Floor::new(part, (&walls, &moves), &[], &Tolerances::for_extent(100.0)).unwrap();
     let (spots, boxes) = floor.spots(limit);
     let b = part.contour.bounds();

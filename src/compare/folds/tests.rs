@@ -4,7 +4,7 @@ use crate::geometry::{Arc, Path};
 use crate::part::{Keep, Part};
 
 fn found(part: &Part, family: &DiscFamily) -> Vec<Fold> {
-    folds(family, &Walls::new(&part.contour), 1e-3, &Tolerances::for_extent(100.0))
+    folds(family, &Passes::new(family), &Walls::new(&part.contour), 1e-3, &Tolerances::for_extent(100.0))
 }
 
 /// A pocket's corner with a fillet of radius `fillet`, material right of the path drawn here.

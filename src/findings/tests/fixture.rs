@@ -4,7 +4,7 @@ use crate::compare::{Comparison, ContourStretch, Excess, Figure, Fold, FoldKind,
 use crate::findings::{Facts, Finding, Judgement, Limits, judge};
 use crate::geometry::{Arc, Contour, Path, Point, Segment, Turn};
 use crate::part::{Keep, Origin, Part};
-use crate::program::{Block, BlockId, Motion, Move, MoveIndex, MoveKind, Plane, Point3, Program, Unit};
+use crate::program::{BlockId, Blocks, Motion, Move, MoveIndex, MoveKind, Plane, Point3, Program, Unit};
 use crate::view::{DiscFamily, DiscMove};
 
 pub fn p(x: f64, y: f64) -> Point {
@@ -60,7 +60,7 @@ impl Case {
                 unit: Unit::Millimetre,
                 unit_stated: true,
                 says_z: true,
-                blocks: Vec::new(),
+                blocks: Blocks::default(),
                 moves: Vec::new(),
                 bound: 0.0,
             },
@@ -86,7 +86,7 @@ impl Case {
         let source = MoveIndex(u32::try_from(i).unwrap());
         let end = segment.end();
         let text = format!("N{i} X{} Y{}", end.x, end.y);
-        self.program.blocks.push(Block { line: 10 + i, text });
+        self.program.blocks.push(10 + i, &text);
         let at = |p: Point| Point3 { x: p.x, y: p.y, z: -1.0 };
         let motion = match segment {
             Segment::Line(l) => Motion::Straight { start: at(l.start), end: at(l.end) },

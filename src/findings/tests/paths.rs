@@ -5,7 +5,7 @@ use crate::compare::{Crest, Excess};
 use crate::findings::{Cause, Kind};
 use crate::geometry::{Arc, Path, Point, Segment, Turn};
 use crate::part::Keep;
-use crate::program::MoveKind;
+use crate::program::{Block, Blocks, MoveKind};
 
 /// Walls that meet in an arc of radius 8 about (52, 32), material below and left of them.
 fn rounded_corner() -> Path {
@@ -38,9 +38,15 @@ fn an_arc_by_radius_the_wrong_way_round_bulges_over_its_chord_and_is_told_so() {
     let mut case = round_it(&[arc(p(66.0, 46.0), p(52.0, 46.0), p(66.0, 32.0), Turn::Left)]);
     case.comparison.gouges = vec![gouge(9.0, p(56.1, 36.1), p(57.657, 37.657), 1, stretch(0, 30.0, 50.0))];
     assert_ne!(case.only().cause, Cause::ArcWrongWay, "its block does not say R");
-    case.program.blocks[1].text = "N20 G3 X66 Y32 R14".into();
+    let reads = |case: &mut Case, second: &str| {
+        let blocks = (0..).map_while(|i| case.program.blocks.get(i)).enumerate();
+        let said = blocks.map(|(i, b)| Block { text: if i == 1 { second } else { b.text }, ..b });
+        let said: Blocks = said.collect();
+        case.program.blocks = said;
+    };
+    reads(&mut case, "N20 G3 X66 Y32 R14");
     assert_eq!(case.only().remedy, "Write G2 in place of G3 in line 11.");
-    case.program.blocks[1].text = "N20 G3 X66 Y32 I14 (R14)".into();
+    reads(&mut case, "N20 G3 X66 Y32 I14 (R14)");
     assert_ne!(case.only().cause, Cause::ArcWrongWay);
 }
 

@@ -176,7 +176,7 @@ fn gouges_on_both_sides_of_a_loops_start_are_one() {
 #[test]
 fn moves_without_a_known_block_still_make_findings() {
     let mut case = case();
-    case.program.blocks.clear();
+    case.program.blocks = crate::program::Blocks::default();
     case.comparison.gouges = vec![bite(0.3, 50.0)];
     let mut far = bite(0.2, 150.0);
     far.worst_move = 999;

@@ -48,7 +48,7 @@ pub fn read_csv(text: &[u8], file: &str, options: &DrawingOptions) -> Result<Rea
         .into_iter()
         .map(|(path, line)| Strand {
             closed: path.is_closed(),
-            segments: path.segments().to_vec(),
+            segments: path.into_segments(),
             layer: None,
             place: Place { file: file.into(), line: Some(line), ..Place::default() },
         })
@@ -95,7 +95,7 @@ pub fn read_csv_chains(text: &[u8], file: &str) -> Result<Chains, Refusal> {
             continue;
         }
         heading_allowed = false;
-        let row = row(content, Place::line(file, line, raw), line)?;
+        let row = row(content, line, || Place::line(file, line, raw))?;
         if let Some(chain) = chains.last_mut() {
             chain.push(row);
         }
@@ -114,55 +114,64 @@ pub fn read_csv_chains(text: &[u8], file: &str) -> Result<Chains, Refusal> {
 /// A first line that names columns: it has letters and no field that is a number.
 fn is_heading(content: &str) -> bool {
     content.starts_with(|c: char| c.is_alphabetic() || c == '"')
-        && fields(content).iter().all(|f| f.parse::<f64>().is_err())
+        && fields(content).all(|f| f.parse::<f64>().is_err())
 }
 
 /// Fields of a line: divided by semicolons, else by commas, else by blanks.
-fn fields(content: &str) -> Vec<&str> {
-    let divided: Vec<&str> = if content.contains(';') {
-        content.split(';').collect()
-    } else if content.contains(',') {
-        content.split(',').collect()
-    } else {
-        content.split_whitespace().collect()
-    };
-    let mut fields: Vec<&str> = divided.into_iter().map(str::trim).collect();
-    if fields.len() > 2 && fields.last().is_some_and(|f| f.is_empty()) {
-        fields.pop();
-    }
-    fields
+fn fields(content: &str) -> impl Iterator<Item = &str> {
+    let mark = [';', ','].into_iter().find(|&m| content.contains(m));
+    let divided = mark.map(|m| content.split(m).map(str::trim));
+    let blanks = if mark.is_none() { content } else { "" };
+    divided.into_iter().flatten().chain(blanks.split_whitespace())
 }
 
-fn row(content: &str, place: Place, line: usize) -> Result<Row, Refusal> {
-    let fields = fields(content);
+fn row(content: &str, line: usize, place: impl Fn() -> Place) -> Result<Row, Refusal> {
+    let mut count = 0;
+    let mut kept = [""; 4];
+    for field in fields(content) {
+        if let Some(slot) = kept.get_mut(count) {
+            *slot = field;
+        }
+        count += 1;
+    }
+    // A mark at the end of the line begins no field.
+    let last = count.checked_sub(1).and_then(|i| kept.get(i));
+    if count > 2 && last.map_or_else(|| content.ends_with([';', ',']), |f| f.is_empty()) {
+        count -= 1;
+    }
     let refuse = |place: Place, found: String, expected: &str, help: &str| {
         vec![Problem::error(place, found, expected, help)]
     };
-    if !(2..=3).contains(&fields.len()) {
+    if !(2..=3).contains(&count) {
         return Err(refuse(
-            place,
-            format!("{} values on this line", fields.len()),
+            place(),
+            format!("{count} values on this line"),
             "x, y or x, y, bulge",
             "write two or three numbers; where a comma is the decimal mark, divide them with semicolons",
         ));
     }
     let mut numbers = [0.0; 3];
-    for (slot, field) in numbers.iter_mut().zip(&fields) {
-        let decimal = if content.contains(';') { field.replace(',', ".") } else { (*field).to_owned() };
-        let at = place.excerpt.as_deref().and_then(|raw| {
-            let byte = raw.find(field)?;
-            Some(raw.get(..byte)?.chars().count() + 1)
-        });
-        let here = place.clone().at(at.unwrap_or(1), field.chars().count().max(1));
-        match decimal.parse::<f64>() {
+    let decimal_comma = content.contains(';');
+    for (slot, field) in numbers.iter_mut().zip(kept.iter().take(count)) {
+        let here = || {
+            let place = place();
+            let at = place.excerpt.as_deref().and_then(|raw| {
+                let byte = raw.find(field)?;
+                Some(raw.get(..byte)?.chars().count() + 1)
+            });
+            place.at(at.unwrap_or(1), field.chars().count().max(1))
+        };
+        let comma = decimal_comma && field.contains(',');
+        let value = if comma { field.replace(',', ".").parse::<f64>() } else { field.parse() };
+        match value {
             Ok(v) if v.is_finite() && v.abs() <= GREATEST_COORDINATE => *slot = v,
             Ok(v) if v.is_finite() => {
                 let help = "check the number, or move the contour nearer to its origin";
-                return Err(refuse(here, format!("{field} is too great"), "at most 1e9", help));
+                return Err(refuse(here(), format!("{field} is too great"), "at most 1e9", help));
             }
             _ => {
                 let help = "write numbers such as 12.5; a comment starts with #";
-                return Err(refuse(here, format!("{field:?} is no number"), "a finite number", help));
+                return Err(refuse(here(), format!("{field:?} is no number"), "a finite number", help));
             }
         }
     }

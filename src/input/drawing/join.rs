@@ -82,7 +82,7 @@ pub fn join(strands: Vec<Strand>, gaps: Gaps, file: &str) -> Result<Joined, Refu
     if let Some(told) = nodes.closed_gaps(&strands, file) {
         problems.push(told);
     }
-    assemble(&strands, &nodes, gaps, problems)
+    assemble(strands, &nodes, gaps, problems)
 }
 
 /// Drops segments without length, and strands that have none left.
@@ -223,7 +223,7 @@ fn count_the_rest(refusal: &mut Refusal, count: usize, what: &str) {
 
 /// Walks from strand to strand over the nodes.
 fn assemble(
-    strands: &[Strand],
+    mut strands: Vec<Strand>,
     nodes: &Nodes,
     gaps: Gaps,
     problems: Vec<Problem>,
@@ -240,16 +240,18 @@ fn assemble(
                 *u = true;
             }
         }
-        let Some(strand) = strands.get(first) else { continue };
-        let closed = closed || strand.closed;
         let mut segments: Vec<Segment> = Vec::new();
         for &(i, entered) in &chain {
-            let Some(s) = strands.get(i) else { continue };
+            // Every strand belongs to one chain only.
+            let Some(own) = strands.get_mut(i).map(|s| std::mem::take(&mut s.segments)) else { continue };
             match entered {
-                WhichEnd::Start => segments.extend_from_slice(&s.segments),
-                WhichEnd::End => segments.extend(s.segments.iter().rev().map(Segment::reversed)),
+                WhichEnd::Start if segments.is_empty() => segments = own,
+                WhichEnd::Start => segments.extend_from_slice(&own),
+                WhichEnd::End => segments.extend(own.iter().rev().map(Segment::reversed)),
             }
         }
+        let Some(strand) = strands.get(first) else { continue };
+        let closed = closed || strand.closed;
         let moved = agree_joints(&mut segments, closed, gaps.join);
         let path = moved.and_then(|moved| {
             joined.moved = joined.moved.max(moved);
@@ -280,6 +282,11 @@ fn assemble(
 fn agree_joints(segments: &mut [Segment], closed: bool, gap: f64) -> Option<f64> {
     let count = segments.len();
     let joints = if closed { count } else { count.saturating_sub(1) };
+    let agree =
+        |a: usize| segments.get(a).map(Segment::end) == segments.get((a + 1) % count).map(Segment::start);
+    if (0..joints).all(agree) {
+        return Some(0.0);
+    }
     let mut wanted: Vec<(Point, Point)> = segments.iter().map(|s| (s.start(), s.end())).collect();
     let mut moved: f64 = 0.0;
     for a in 0..joints {

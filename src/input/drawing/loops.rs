@@ -8,7 +8,9 @@
 //! ```
 
 use super::join::Gaps;
-use crate::geometry::{BoxIndex, Contour, Crossing, MeetingKind, Path, Point, Rect, Segment, Vec2, crossing};
+use crate::geometry::{
+    BoxIndex, Contour, Crossing, MeetingKind, Path, Point, Rect, Segment, Vec2, advancing, crossing,
+};
 use crate::input::{Place, Problem, Refusal};
 use crate::part::Origin;
 
@@ -135,31 +137,50 @@ fn lies_on(a: &Path, b: &Path, same: f64) -> bool {
 #[must_use]
 pub fn first_crossing(contour: &Contour) -> Option<(Point, usize, usize)> {
     let items = Items::new(contour);
-    let boxes: Vec<Rect> = items.segments.iter().map(|s| s.bounds().inflate(TOUCH, TOUCH)).collect();
+    let chunks = items.chunks();
+    let boxes: Vec<Rect> = chunks.iter().map(|c| c.around).collect();
     let index = BoxIndex::new(&boxes);
     let mut near = Vec::new();
-    for (i, window) in boxes.iter().enumerate() {
+    for (number, chunk) in chunks.iter().enumerate() {
         near.clear();
-        index.search(*window, |j| {
-            if j > i {
-                near.push(j);
+        index.search(chunk.around, |n| {
+            // Segments of one stretch do not cross one another.
+            if n > number && chunks[n].stretch != chunk.stretch {
+                near.push(n);
             }
         });
         near.sort_unstable();
-        for &j in &near {
-            if let Some(at) = items.crossing(i, j) {
-                return Some((at, items.path(i), items.path(j)));
+        for i in chunk.range.clone() {
+            for j in near.iter().flat_map(|&n| chunks[n].range.clone()) {
+                let at = items.meet(i, j).then(|| items.crossing(i, j)).flatten();
+                if let Some(at) = at {
+                    return Some((at, items.path(i), items.path(j)));
+                }
             }
         }
     }
     None
 }
 
+/// Segments in one chunk, at most.
+const CHUNK: usize = 16;
+
+/// Some segments of one path in a row that advance one way.
+struct Chunk {
+    range: std::ops::Range<usize>,
+    /// Box round them, with room for touching.
+    around: Rect,
+    /// Number of the stretch it belongs to.
+    stretch: usize,
+}
+
 /// Segments of a contour with their neighbours.
-struct Items {
-    segments: Vec<Segment>,
-    /// Path, segment before and segment after each.
-    places: Vec<(usize, Option<usize>, Option<usize>)>,
+struct Items<'a> {
+    segments: Vec<&'a Segment>,
+    /// Position of the path of each.
+    paths: Vec<u32>,
+    /// First segment of each path, and whether it is a loop; the number of segments last.
+    firsts: Vec<(usize, bool)>,
 }
 
 /// A way that leaves a point: direction and how it bends to the left.
@@ -169,23 +190,72 @@ struct Way {
     curvature: f64,
 }
 
-impl Items {
-    fn new(contour: &Contour) -> Self {
-        let segments = contour.segments().map(|(_, s)| *s).collect();
-        let mut places = Vec::new();
-        for (path, p) in contour.paths().iter().enumerate() {
-            let (first, last) = (places.len(), places.len() + p.segments().len() - 1);
-            places.extend((first..=last).map(|i| {
-                let before = if i > first { Some(i - 1) } else { p.is_closed().then_some(last) };
-                let after = if i < last { Some(i + 1) } else { p.is_closed().then_some(first) };
-                (path, before, after)
-            }));
+impl<'a> Items<'a> {
+    fn new(contour: &'a Contour) -> Self {
+        let segments: Vec<&Segment> = contour.segments().map(|(_, s)| s).collect();
+        let paths = contour.segments().map(|(path, _)| u32::try_from(path).unwrap_or(u32::MAX)).collect();
+        let mut firsts = vec![(0, false)];
+        for path in contour.paths() {
+            if let Some(last) = firsts.last_mut() {
+                last.1 = path.is_closed();
+                let next = last.0 + path.segments().len();
+                firsts.push((next, false));
+            }
         }
-        Self { segments, places }
+        Self { segments, paths, firsts }
+    }
+
+    /// First segment of the path of segment `i`, the last one, and whether the path is a loop.
+    fn range(&self, i: usize) -> Option<(usize, usize, bool)> {
+        let path = self.path(i);
+        let &(first, closed) = self.firsts.get(path)?;
+        let last = self.firsts.get(path + 1)?.0.checked_sub(1)?;
+        Some((first, last, closed))
+    }
+
+    /// The segment before `i` on its path.
+    fn before(&self, i: usize) -> Option<usize> {
+        let (first, last, closed) = self.range(i)?;
+        if i > first { Some(i - 1) } else { closed.then_some(last) }
+    }
+
+    /// The segment after `i` on its path.
+    fn after(&self, i: usize) -> Option<usize> {
+        let (first, last, closed) = self.range(i)?;
+        if i < last { Some(i + 1) } else { closed.then_some(first) }
+    }
+
+    /// The segments in chunks, in order.
+    fn chunks(&self) -> Vec<Chunk> {
+        let count = self.segments.len();
+        // Ways that are compared at a touch lie up to four touches apart.
+        let mut starts = advancing(self.segments.iter().copied(), 4.0 * TOUCH);
+        // Two paths that meet end to end are two stretches all the same.
+        starts.extend((1..count).filter(|&i| self.path(i) != self.path(i - 1)));
+        starts.sort_unstable();
+        starts.dedup();
+        let mut chunks = Vec::new();
+        for (stretch, &from) in starts.iter().enumerate() {
+            let to = starts.get(stretch + 1).copied().unwrap_or(count);
+            for first in (from..to).step_by(CHUNK) {
+                let range = first..(first + CHUNK).min(to);
+                let boxes = self.segments.get(range.clone()).unwrap_or_default().iter().map(|s| s.bounds());
+                let around = boxes.reduce(|a, b| a.union(b)).unwrap_or(Rect::ZERO).inflate(TOUCH, TOUCH);
+                chunks.push(Chunk { range, around, stretch });
+            }
+        }
+        chunks
+    }
+
+    /// Do the boxes of two segments meet, with room for touching?
+    fn meet(&self, i: usize, j: usize) -> bool {
+        let (Some(a), Some(b)) = (self.segments.get(i), self.segments.get(j)) else { return false };
+        let (a, b) = (a.bounds().inflate(TOUCH, TOUCH), b.bounds().inflate(TOUCH, TOUCH));
+        a.x0 <= b.x1 && b.x0 <= a.x1 && a.y0 <= b.y1 && b.y0 <= a.y1
     }
 
     fn path(&self, i: usize) -> usize {
-        self.places.get(i).map_or(0, |p| p.0)
+        self.paths.get(i).map_or(0, |p| *p as usize)
     }
 
     fn crossing(&self, i: usize, j: usize) -> Option<Point> {
@@ -218,18 +288,17 @@ impl Items {
 
     /// Is `p` the joint of two neighbours?
     fn is_joint(&self, p: Point, i: usize, j: usize) -> bool {
-        let (Some(place), Some(a)) = (self.places.get(i), self.segments.get(i)) else { return false };
-        (place.2 == Some(j) && near(a.end(), p)) || (place.1 == Some(j) && near(a.start(), p))
+        let Some(a) = self.segments.get(i) else { return false };
+        (self.after(i) == Some(j) && near(a.end(), p)) || (self.before(i) == Some(j) && near(a.start(), p))
     }
 
     /// The two ways in which the path of segment `i` leaves `p`: back along it, and on along it.
     fn ways(&self, p: Point, i: usize) -> Option<[Way; 2]> {
-        let segment = self.segments.get(i)?;
-        let (_, before, after) = *self.places.get(i)?;
+        let segment = *self.segments.get(i)?;
         let (arriving, leaving, t_in, t_out) = if near(segment.start(), p) {
-            (self.segments.get(before?)?, segment, 1.0, 0.0)
+            (*self.segments.get(self.before(i)?)?, segment, 1.0, 0.0)
         } else if near(segment.end(), p) {
-            (segment, self.segments.get(after?)?, 1.0, 0.0)
+            (segment, *self.segments.get(self.after(i)?)?, 1.0, 0.0)
         } else {
             let t = segment.nearest(p).t;
             (segment, segment, t, t)

@@ -2,6 +2,8 @@
 //! mark before the first is skipped. Bytes that are no UTF-8 are kept for messages and block texts as
 //! Latin-1, the code of older controls; outside comments the lexer refuses them.
 
+use std::borrow::Cow;
+
 use super::faults::Line;
 
 /// Why a file is no program text.
@@ -39,9 +41,9 @@ fn mostly_control(text: &[u8]) -> bool {
 }
 
 /// A line as characters: UTF-8, or Latin-1 where it is none.
-pub(super) fn decode(line: &[u8]) -> String {
+pub(super) fn decode(line: &[u8]) -> Cow<'_, str> {
     match std::str::from_utf8(line) {
-        Ok(text) => text.to_owned(),
+        Ok(text) => Cow::Borrowed(text),
         Err(_) => line.iter().map(|&b| char::from(b)).collect(),
     }
 }

@@ -4,12 +4,14 @@
 
 use super::faults::Line;
 use super::lines::decode;
-use crate::program::{Block, BlockId, Motion, Move, MoveKind, Program, Unit};
+use crate::program::{BlockId, Blocks, Motion, Move, MoveKind, Program, Unit};
 
 /// Moves as they are read.
 #[derive(Debug, Default)]
 pub(super) struct Moves {
-    blocks: Vec<Block>,
+    blocks: Blocks,
+    /// Line of the last block.
+    last_line: usize,
     moves: Vec<Move>,
     /// Greatest distance between a commanded curve and the arc kept for it.
     pub bound: f64,
@@ -42,8 +44,9 @@ impl Moves {
         if count == u32::MAX {
             return Err(TooMany);
         }
-        if self.blocks.last().is_none_or(|b| b.line != line.number) {
-            self.blocks.push(Block { line: line.number, text: decode(line.text) });
+        if self.last_line != line.number {
+            self.last_line = line.number;
+            self.blocks.push(line.number, &decode(line.text));
         }
         let (start, end) = (motion.start(), motion.end());
         let rises = start.plan() == end.plan() && end.z > start.z;
@@ -83,6 +86,8 @@ impl Moves {
     /// The program, and how many rapids were left out because their height is not known.
     pub fn finish(mut self, file: &str, unit: Unit, unit_stated: bool) -> (Program, usize) {
         self.turret_tools();
+        self.blocks.shrink();
+        self.moves.shrink_to_fit();
         let left_out = if self.says_z { self.leave_out_blind() } else { 0 };
         let Self { blocks, moves, bound, says_z, .. } = self;
         (Program { file: file.to_owned(), unit, unit_stated, says_z, blocks, moves, bound }, left_out)

@@ -61,8 +61,9 @@ fn motion_is_modal_and_axis_words_alone_move() {
 fn every_move_knows_line_and_text_of_its_block() {
     let program =
         read("%\r\nO100 (TEST)\r\nN10 G21 G0 X0 Y0\r\n(nothing)\r\nN20 G1 X5 (cut)  \r\nM30\r\n%").value;
-    let blocks: Vec<_> = program.moves.iter().map(|m| &program.blocks[m.block.0 as usize]).collect();
-    assert_eq!((blocks[1].line, blocks[1].text.as_str()), (5, "N20 G1 X5 (cut)  "));
+    let blocks: Vec<_> =
+        program.moves.iter().map(|m| program.blocks.get(m.block.0 as usize).unwrap()).collect();
+    assert_eq!((blocks[1].line, blocks[1].text), (5, "N20 G1 X5 (cut)  "));
     assert_eq!(program.file, "test.nc");
 }
 
@@ -72,7 +73,7 @@ fn line_ends_marks_and_old_code_pages_change_nothing() {
     assert_eq!(ends("G21 G0 X0 Y0\rG1 X5\rM2"), lf);
     assert_eq!(ends("\u{feff}G21 G0 X0 Y0\r\nG1 X5\r\nM2\r\n\u{1a}"), lf);
     let latin = read_iso(b"G21 G0 X0 Y0\nG1 X5 (Fr\xE4sen)\nM2", "a", &ProgramOptions::default()).unwrap();
-    assert_eq!(latin.value.blocks[1].text, "G1 X5 (Fräsen)");
+    assert_eq!(latin.value.blocks.get(1).unwrap().text, "G1 X5 (Fräsen)");
 }
 
 #[test]

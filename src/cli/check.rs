@@ -114,7 +114,7 @@ pub fn read_program(
     };
     let mut reading = judge::read_program(&bytes, &request.file, request.format, &options)?;
     if !reading.value.unit_stated && request.units.is_none() {
-        let place = Place::file(&request.file.name);
+        let place = Place::file(request.file.shown());
         let Some(unit) = drawing_unit else {
             return Err(vec![Problem::error(
                 place,

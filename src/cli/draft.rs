@@ -27,6 +27,11 @@ impl Named {
         Self { name, path }
     }
 
+    /// The name of an input as a person reads it.
+    pub fn shown(&self) -> &str {
+        if self.is_standard() { "standard input" } else { &self.name }
+    }
+
     /// Standard input or output?
     pub fn is_standard(&self) -> bool {
         self.path.as_os_str() == "-"

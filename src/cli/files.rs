@@ -23,7 +23,7 @@ pub fn read(file: &Named) -> Result<Vec<u8>, Refusal> {
     } else {
         if file.path.is_dir() {
             return Err(vec![Problem::error(
-                Place::file(&file.name),
+                Place::file(file.shown()),
                 "this is a folder",
                 "a file",
                 "name the file in it",
@@ -33,7 +33,7 @@ pub fn read(file: &Named) -> Result<Vec<u8>, Refusal> {
     };
     match read {
         Ok(_) if bytes.len() as u64 > GREATEST => Err(vec![Problem::error(
-            Place::file(&file.name),
+            Place::file(file.shown()),
             format!("the file is larger than {} megabytes", GREATEST >> 20),
             "a drawing or a program",
             "give the file meant, or cut the program into parts and judge each",
@@ -44,7 +44,7 @@ pub fn read(file: &Named) -> Result<Vec<u8>, Refusal> {
 }
 
 fn unreadable(file: &Named, error: &std::io::Error) -> Problem {
-    let place = Place::file(&file.name);
+    let place = Place::file(file.shown());
     if error.kind() != ErrorKind::NotFound {
         let found = format!("the file cannot be read: {error}");
         return Problem::error(place, found, "", "check the file and the rights to it");

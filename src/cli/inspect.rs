@@ -104,9 +104,36 @@ fn extent(b: Rect) -> String {
     format!("X {} to {}, Y {} to {} ({w} x {h})", n(b.x0), n(b.x1), n(b.y0), n(b.y1))
 }
 
-/// One row of the description.
+/// Width of a row, that of the classic terminal, and where its text begins.
+const WIDTH: usize = 80;
+/// See [`WIDTH`].
+const INDENT: usize = 12;
+
+/// Below this, in the unit of the file, a difference is rounding and not worth a word.
+const ROUNDING: f64 = 1e-6;
+
+/// One row of the description, wrapped.
 fn row(out: &mut String, name: &str, text: &str) {
-    let _ = writeln!(out, "  {name:<9} {text}");
+    let mut line = format!("  {name:<9}");
+    let mut used = line.chars().count();
+    for word in text.split(' ') {
+        let more = word.chars().count() + 1;
+        if used + more > WIDTH && used > INDENT {
+            let _ = writeln!(out, "{line}");
+            line = " ".repeat(INDENT - 1);
+            used = INDENT - 1;
+        }
+        line.push(' ');
+        line.push_str(word);
+        used += more;
+    }
+    let _ = writeln!(out, "{line}");
+}
+
+/// A bound, rounded up to the millionth.
+fn within(bound: f64) -> String {
+    let up = (bound * 1e6).ceil().max(1.0) / 1e6;
+    format!("{up:.6}").trim_end_matches('0').trim_end_matches('.').to_owned()
 }
 
 fn drawing(name: &str, reading: &Reading<Drawing>) -> String {
@@ -114,10 +141,10 @@ fn drawing(name: &str, reading: &Reading<Drawing>) -> String {
     let unit = d.unit.map_or("no unit stated", Unit::sign);
     let mut out = format!("{name}: drawing, {unit}\n");
     row(&mut out, "box", &extent(d.contour.bounds()));
-    let curves = if d.contour.bound() > 0.0 {
-        format!("arcs that lie within {:.1e} of the drawing's curves", d.contour.bound())
+    let curves = if d.contour.bound() > ROUNDING {
+        format!("arcs that lie within {} of the drawing's curves", within(d.contour.bound()))
     } else {
-        "lines and arcs, exactly as drawn".into()
+        "lines and arcs as drawn".into()
     };
     row(&mut out, "curves", &curves);
     for layer in &d.layers {
@@ -208,7 +235,7 @@ fn program(reading: &Reading<Program>) -> String {
         row(&mut out, "box", &format!("{}, cutter's center at feed rate", extent(all)));
     }
     if p.bound > 0.0 {
-        row(&mut out, "arcs", &format!("kept within {:.1e} of what is commanded", p.bound));
+        row(&mut out, "arcs", &format!("kept within {} of what is commanded", within(p.bound)));
     }
     warnings(&mut out, reading);
     out
@@ -251,7 +278,7 @@ pub fn swept(region: &SweptRegion, program: &Program, written_nowhere: bool) -> 
         "edge",
         &format!("{} {unit}, {}", n(region.perimeter()), lines_and_arcs(region.segments())),
     );
-    row(&mut out, "bound", &format!("the edge is exact to {:.1e} {unit}", region.bound));
+    row(&mut out, "bound", &format!("the edge is exact to {} {unit}", within(region.bound)));
     if written_nowhere {
         row(&mut out, "written", "nothing; say --json, --svg, --dxf or --csv FILE to have it");
     }

@@ -70,7 +70,7 @@ pub fn read_program(
     options: &ProgramOptions,
 ) -> Result<Reading<Program>, Refusal> {
     match format {
-        ProgramFormatName::Iso => read_iso(bytes, &file.name, options),
+        ProgramFormatName::Iso => read_iso(bytes, file.shown(), options),
     }
 }
 

@@ -88,10 +88,9 @@ fn elsewhere(scene: &Scene<'_>, part: Rect, path: Rect) -> Option<Problem> {
         ),
         "a contour beside the path of the cutter",
         format!(
-            "lay the drawing where the program cuts with --mirror, --turn and --shift (--shift {},{} would bring \
-             both middles together)",
-            super::number_text(shift.x, unit),
-            super::number_text(shift.y, unit)
+            "lay the drawing where the program cuts with --mirror, --turn and --shift (moved by {} from where it \
+             lies now, both middles would come together)",
+            point_text(shift.to_point(), unit)
         ),
     ))
 }
@@ -131,11 +130,13 @@ fn left_out(scene: &Scene<'_>) -> Option<Problem> {
         Problem::warning(
             drawing(scene),
             format!(
-                "{count} of the drawing's {} loops and chains are not judged: the program never comes near them",
-                scene.walls.contour().paths().len()
+                "{count} of the drawing's {} contours {} not judged: the program never comes near {}",
+                scene.walls.contour().paths().len(),
+                if count == 1 { "is" } else { "are" },
+                if count == 1 { "it" } else { "them" }
             ),
             "",
-            "make sure another tool or program cuts them; without --only-visited each one is a fault",
+            "make sure another tool or program cuts what is left out; without --only-visited it is a fault",
         )
     })
 }

@@ -363,8 +363,18 @@ impl<'a> Words<'a> {
         )
     }
 
-    /// Which blocks to take out so that the moves before and after the loop meet.
-    fn cut_out(&self, (first, last): (usize, usize), at: Point) -> String {
+    /// Which blocks to take out so that the moves before and after the loop meet, and what becomes of
+    /// the corner where they do: sharp, it fits the wall only where the wall's own radius is the cutter's.
+    fn cut_out(&self, moves: (usize, usize), at: Point) -> String {
+        let radius = self.len(self.scene.cuts.radius(moves.0));
+        format!(
+            "{} Where the wall there is a fillet wider than the cutter, round that corner of the path with an \
+             arc of the fillet's radius less {radius}.",
+            self.joined(moves, at)
+        )
+    }
+
+    fn joined(&self, (first, last): (usize, usize), at: Point) -> String {
         let cuts = &self.scene.cuts;
         let place = point_text(at, self.unit);
         let crosses = |i: usize| {

@@ -17,6 +17,9 @@ pub fn headline(report: &Report) -> String {
     };
     match named {
         Some((finding, number)) => format!("{} (finding {number})", sentence(finding, report.unit)),
+        None if report.verdict == Verdict::Undecided && report.worst.excess.is_none() => {
+            "nothing of the contour was judged, for the program comes near none of it".to_owned()
+        }
         None => figures(report),
     }
 }
@@ -48,7 +51,7 @@ fn figures(report: &Report) -> String {
     let one = |name: &str, figure: Option<Figure>, limit: f64| {
         figure.map(|f| {
             let size = number::figure(f, Some(limit), unit);
-            format!("{name} {size} of {} {}", number::stated(limit), unit.sign())
+            format!("{name} {size} {} ({} allowed)", unit.sign(), number::stated(limit))
         })
     };
     let (worst, limits) = (&report.worst, &report.limits);
@@ -60,7 +63,7 @@ fn figures(report: &Report) -> String {
     .into_iter()
     .flatten()
     .collect();
-    if all.is_empty() { "no figure was looked for".to_owned() } else { format!("worst {}", all.join(", ")) }
+    if all.is_empty() { "no figure was looked for".to_owned() } else { all.join(", ") }
 }
 
 #[cfg(test)]
@@ -78,7 +81,10 @@ mod tests {
 
     #[test]
     fn a_pass_names_every_figure_looked_for() {
-        assert_eq!(headline(&sample::passing()), "worst gouge 0.0000 of 0.02 mm, excess 0.0300 of 0.05 mm");
+        assert_eq!(
+            headline(&sample::passing()),
+            "gouge 0.0000 mm (0.02 allowed), excess 0.0300 mm (0.05 allowed)"
+        );
     }
 
     #[test]

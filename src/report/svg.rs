@@ -30,6 +30,8 @@ pub fn render(report: &Report) -> String {
     let map = Map::fitting(bounds(report));
     let drawn = &report.drawing;
     let mut inside = clipped()
+        // Material covers the tint: what is left of it in sight was free to be cut.
+        .add(drawing::swept_region(&drawn.swept, &map))
         .add(drawing::material(drawn, &map))
         .add(drawing::cutter_path(&drawn.path, &drawn.rapids, &map))
         // Where the edge follows the contour, as it should, it shows as a bright core in the dark line.

@@ -30,6 +30,9 @@ pub const DEFAULT_WIDTH: usize = 80;
 /// Narrowest width honoured; below it lines grow longer than asked.
 const NARROWEST: usize = 40;
 
+/// Least error of the curves' arcs that is spoken of, a length: a micrometre's thousandth.
+const WORTH_A_WORD: f64 = 1e-6;
+
 /// Findings described in full; the rest is counted.
 const IN_FULL: usize = 20;
 
@@ -119,8 +122,7 @@ fn figures(page: &mut Page, report: &Report) {
     ];
     for (kind, figure, limit) in all {
         let name = page.paint(ink(kind), &format!("{:<6}", kind.name()));
-        let said =
-            figure.map_or_else(|| "not looked for, or none there".to_owned(), |f| against(f, limit, report));
+        let said = figure.map_or_else(|| nothing_of(kind, report).to_owned(), |f| against(f, limit, report));
         let indent = " ".repeat(10);
         for (at, line) in wrap(&said, page.width.saturating_sub(10)).iter().enumerate() {
             page.line(&if at == 0 { format!("  {name}  {line}") } else { format!("{indent}{line}") });
@@ -133,6 +135,14 @@ fn figures(page: &mut Page, report: &Report) {
             unit.sign()
         );
         page.paragraph("  ", &text);
+    }
+}
+
+/// Why there is no figure of a kind.
+const fn nothing_of(kind: Kind, report: &Report) -> &'static str {
+    match (kind, report.worst.excess) {
+        (Kind::Cusp, Some(_)) => "none: nowhere on the contour do two separate passes meet",
+        _ => "not looked for",
     }
 }
 
@@ -188,17 +198,12 @@ fn counted(findings: &[Finding]) -> String {
 fn described(page: &mut Page, finding: &Finding, number: usize, report: &Report) {
     let (unit, sign) = (report.unit, report.unit.sign());
     page.out.push('\n');
-    let size = number::figure(finding.figure, finding.limit, unit);
     let bound = number::bound(finding.figure.bound, unit);
     let lead = format!("{number:>3}  ");
     let kind = finding.kind.name();
     page.paragraph(
         &lead,
-        &format!(
-            "{kind}, {}: {size} {sign}, certain to {bound} {sign}. {}",
-            verdict_word(finding),
-            finding.message
-        ),
+        &format!("{kind}, {}, certain to {bound} {sign}. {}", verdict_word(finding), finding.message),
     );
     let indent = " ".repeat(lead.chars().count());
     page.paragraph(&indent, &place(finding, report));
@@ -210,7 +215,9 @@ fn described(page: &mut Page, finding: &Finding, number: usize, report: &Report)
         page.paragraph(&indent, &format!("and {} blocks more", finding.blocks.len() - 3));
     }
     page.paragraph(&indent, &format!("cause: {} ({})", cause_words(finding.cause), finding.cause.name()));
-    page.paragraph(&indent, &format!("to do: {}", finding.remedy));
+    let before = report.findings.iter().zip(1..number).find(|(f, _)| f.remedy == finding.remedy);
+    let remedy = before.map_or_else(|| finding.remedy.clone(), |(_, n)| format!("as for finding {n}"));
+    page.paragraph(&indent, &format!("to do: {remedy}"));
 }
 
 /// A cause in a machinist's words.
@@ -283,7 +290,8 @@ fn inputs(page: &mut Page, report: &Report) {
     if inputs.allowance > 0.0 {
         part.push_str(&format!("; {} {sign} left on purpose", number::stated(inputs.allowance)));
     }
-    if inputs.curve_bound > 0.0 {
+    // What reading exact lines and arcs costs is rounding, and not worth a word.
+    if inputs.curve_bound >= WORTH_A_WORD {
         part.push_str(&format!(
             "; curves read as arcs to {} {sign}",
             number::bound(inputs.curve_bound, report.unit)

@@ -23,7 +23,7 @@ fn a_drawing_that_lies_elsewhere_is_told_with_both_boxes_and_the_shift() {
     let [warning] = judged.warnings.as_slice() else { panic!("{:#?}", judged.warnings) };
     assert_eq!((warning.severity, warning.place.file.as_str()), (Severity::Warning, "plate.dxf"));
     holds(&warning.found, &["X0.000 Y0.000 to X100.000 Y60.000", "X995.000 Y-5.000 to X1105.000 Y65.000"]);
-    holds(&warning.help, &["--mirror", "--turn", "--shift 1000.000,0.000"]);
+    holds(&warning.help, &["--mirror", "--turn", "--shift (moved by X1000.000 Y0.000"]);
 }
 
 #[test]
@@ -63,7 +63,7 @@ fn loops_left_out_on_request_are_counted() {
     let judged = case.judge();
     assert_eq!(judged.verdict, Verdict::Pass);
     let [warning] = judged.warnings.as_slice() else { panic!("{:#?}", judged.warnings) };
-    holds(&warning.found, &["1 of the drawing's 2 loops"]);
+    holds(&warning.found, &["1 of the drawing's 2 contours is not judged"]);
 }
 
 #[test]

@@ -5,8 +5,8 @@
 //! allowed error, measured after the transform, with a proved bound. The drawing is seen with y up: its
 //! origin is the lower left corner of the page (the upper left one where the page has no height).
 //!
-//! What could be contour but is not read (text, images, `use`, clipping) is named with its place. Paint
-//! is not looked at: a stroke's width or a filling makes no difference to a contour.
+//! What could be contour but is not read (text, images, clipping) is named with its place. Paint is not
+//! looked at: a stroke's width or a filling makes no difference to a contour.
 
 mod length;
 mod outline;

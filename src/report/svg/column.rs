@@ -134,7 +134,7 @@ fn verdict(column: &mut Column, report: &Report) {
     let words = headline(report);
     let mut letters = words.chars();
     let words: String = letters.next().into_iter().flat_map(char::to_uppercase).chain(letters).collect();
-    for line in lines(&words, SIZE, COLUMN.width(), 4) {
+    for line in lines(&words, SIZE, COLUMN.width(), 5) {
         column.line(&line);
     }
 }

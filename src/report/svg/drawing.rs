@@ -80,7 +80,7 @@ pub fn swept_edge(region: &crate::envelope::SweptRegion, map: &Map) -> Path {
     stroke(loops(region, map), EDGE, 0.25).set("id", "se-swept-edge")
 }
 
-/// The swept region filled, for the drawing that shows nothing else.
+/// The swept region, tinted.
 pub fn swept_region(region: &crate::envelope::SweptRegion, map: &Map) -> Path {
     Path::new().set("d", loops(region, map)).set("fill", SWEPT).set("fill-rule", "evenodd")
 }

@@ -13,7 +13,7 @@ pub const RULE: &str = "#5f656e";
 pub const MATERIAL: &str = "#e9e7e2";
 /// The swept edge.
 pub const EDGE: &str = "#3398c0";
-/// The swept region, in the envelope's drawing.
+/// The swept region.
 pub const SWEPT: &str = "#dcebf1";
 /// Path and rapids of the cutter.
 pub const PATH: &str = "#868c95";

@@ -19,8 +19,6 @@ pub enum Entry {
     Chain,
     /// Program zero.
     Zero,
-    /// The swept edge.
-    Edge,
     /// The swept region with its edge.
     Swept,
     /// Path of the cutter's centre.
@@ -46,8 +44,7 @@ impl Entry {
             Self::Part => "part: outline and material",
             Self::Chain => "part: outline, material side",
             Self::Zero => "X0 Y0",
-            Self::Edge => "edge the cutter leaves",
-            Self::Swept => "area the cutter covers",
+            Self::Swept => "cut away, and the edge left",
             Self::Path => "path of the cutter's center",
             Self::Rapids => "rapid",
             Self::TooDeep => "cut too deep",
@@ -66,7 +63,7 @@ pub fn entries(report: &crate::findings::Report, map: &Map) -> Vec<Entry> {
     [
         (Entry::Part, !chain),
         (Entry::Chain, chain),
-        (Entry::Edge, !drawing.swept.loops.is_empty()),
+        (Entry::Swept, !drawing.swept.loops.is_empty()),
         (Entry::Path, !drawing.path.is_empty()),
         (Entry::Rapids, !drawing.rapids.is_empty()),
         (Entry::TooDeep, any(&|f| matches!(f.kind, Kind::Gouge | Kind::Rapid))),
@@ -117,7 +114,6 @@ fn sample(entry: Entry, y: f64) -> Group {
             group.add(strokes).add(line(INK, 0.5))
         }
         Entry::Zero => group.add(zero_mark(Point::new(x0 + 4.5, y))),
-        Entry::Edge => group.add(line(EDGE, 0.4)),
         Entry::Swept => group.add(area(SWEPT, EDGE, 0.3)),
         Entry::Path => group.add(line(PATH, 0.25)),
         Entry::Rapids => group.add(line(PATH, 0.25).set("stroke-dasharray", "1.6 1")),

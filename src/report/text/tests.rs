@@ -12,7 +12,7 @@ fn the_verdict_and_worst_figure_stand_in_the_first_line() {
         first.as_deref(),
         Some("FAIL: the cutter goes 0.3100 mm too deep, 0.02 mm is allowed (finding 1)")
     );
-    assert!(text(&sample::passing()).starts_with("PASS: worst gouge 0.0000 of 0.02 mm"));
+    assert!(text(&sample::passing()).starts_with("PASS: gouge 0.0000 mm (0.02 allowed)"));
     assert!(text(&sample::undecided()).starts_with("UNDECIDED: "));
 }
 
@@ -40,6 +40,16 @@ fn every_finding_says_place_block_cause_and_remedy() {
     ] {
         assert!(text.contains(piece), "{piece}\n{text}");
     }
+}
+
+#[test]
+fn a_remedy_said_before_is_named_and_not_repeated() {
+    let mut report = sample::failing();
+    let first = report.findings[0].remedy.clone();
+    report.findings[1].remedy.clone_from(&first);
+    let text = text(&report);
+    assert_eq!(text.matches("to do: Take the loop between").count(), 1);
+    assert_eq!(text.matches("to do: as for finding 1\n").count(), 1);
 }
 
 #[test]

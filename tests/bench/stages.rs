@@ -15,9 +15,11 @@ fn main() {
 }
 
 fn family(name: &str, moves: usize) -> DiscFamily {
-    let path = workloads::make(name, moves).unwrap_or_else(|| workloads::Path { points: vec![], closed: false });
+    let path =
+        workloads::make(name, moves).unwrap_or_else(|| workloads::Path { points: vec![], closed: false });
     let count = if path.closed { path.points.len() } else { path.points.len().saturating_sub(1) };
-    let at = |i: usize| path.points.get(i % path.points.len()).map_or(Point::ZERO, |p| Point::new(p[0], p[1]));
+    let at =
+        |i: usize| path.points.get(i % path.points.len()).map_or(Point::ZERO, |p| Point::new(p[0], p[1]));
     let moves = (0..count).map(|i| DiscMove {
         segment: Segment::line(at(i), at(i + 1)),
         radius: workloads::RADIUS,

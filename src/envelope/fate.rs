@@ -60,11 +60,7 @@ impl Blocks {
     /// Does a move of another ring than `own` come within reach of `window`?
     fn reached(&self, window: Rect, own: usize, margin: f64) -> bool {
         let reach = self.radius + margin;
-        let mut met = false;
-        self.index.search(window.inflate(reach, reach), |b| {
-            met |= self.ring.get(b).is_some_and(|&r| r as usize != own);
-        });
-        met
+        self.index.any(window.inflate(reach, reach), |b| self.ring.get(b).is_some_and(|&r| r as usize != own))
     }
 }
 

@@ -108,6 +108,28 @@ impl BoxIndex {
         }
     }
 
+    /// Does `wanted` hold for an item whose box meets `window`? Stops at the first.
+    #[must_use]
+    pub fn any(&self, window: Rect, mut wanted: impl FnMut(usize) -> bool) -> bool {
+        let Some(root) = self.boxes.last() else { return false };
+        if !meets(*root, window) {
+            return false;
+        }
+        let mut pile = vec![(self.levels.len() - 2, self.boxes.len() - 1)];
+        while let Some((level, node)) = pile.pop() {
+            if level == 0 {
+                if wanted(self.items[node] as usize) {
+                    return true;
+                }
+                continue;
+            }
+            pile.extend(
+                self.children(level, node).filter(|&c| meets(self.boxes[c], window)).map(|c| (level - 1, c)),
+            );
+        }
+        false
+    }
+
     /// Calls `visit` with every item whose box lies within `radius` of `p`, in a fixed order. Unlike
     /// [`BoxIndex::search`] it leaves out what only the corners of a window would reach.
     pub fn within(&self, p: Point, radius: f64, mut visit: impl FnMut(usize)) {
@@ -257,6 +279,9 @@ mod tests {
             found.sort_unstable();
             let scan: Vec<usize> = (0..n).filter(|&i| meets(all[i], window)).collect();
             assert_eq!(found, scan, "{n} boxes");
+            for i in 0..n {
+                assert_eq!(index.any(window, |k| k == i), scan.contains(&i), "{i} of {n} boxes");
+            }
         }
     }
 

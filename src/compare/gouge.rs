@@ -108,14 +108,15 @@ impl<'a> Follower<'a> {
             return false;
         }
         let least = self.walls.targets.least_from(line, within);
-        let depth = radius - least.unwrap_or(within);
-        if least.is_some_and(|d| d <= half) || depth > self.threshold {
+        // Not computed from `within`: the rounding of two differences could lift it over the threshold.
+        let depth = least.map(|d| radius - d);
+        if least.is_some_and(|d| d <= half) || depth.is_some_and(|g| g > self.threshold) {
             return false;
         }
         if self.ends_open != Some(line.start) && !self.is_open(line.start) {
             return false;
         }
-        self.greatest = self.greatest.max(depth);
+        self.greatest = depth.map_or(self.greatest, |g| self.greatest.max(g));
         self.ends_open = Some(line.end);
         true
     }

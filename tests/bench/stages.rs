@@ -20,11 +20,8 @@ fn family(name: &str, moves: usize) -> DiscFamily {
     let count = if path.closed { path.points.len() } else { path.points.len().saturating_sub(1) };
     let at =
         |i: usize| path.points.get(i % path.points.len()).map_or(Point::ZERO, |p| Point::new(p[0], p[1]));
-    let moves = (0..count).map(|i| DiscMove {
-        segment: Segment::line(at(i), at(i + 1)),
-        radius: workloads::RADIUS,
-        source: MoveIndex(i as u32),
-    });
+    let moves = (0..count)
+        .map(|i| DiscMove::constant(Segment::line(at(i), at(i + 1)), workloads::RADIUS, MoveIndex(i as u32)));
     DiscFamily { moves: moves.collect() }
 }
 
@@ -45,11 +42,11 @@ fn clearance_at_10_000_points(bencher: Bencher, name: &str) {
     let f = family(name, 100_000);
     let clearance = Clearance::new(&f);
     let mut rng = fastrand::Rng::with_seed(2);
-    let points: Vec<Point> = (0..10_000)
-        .filter_map(|_| f.moves.get(rng.usize(..f.moves.len())))
-        .map(|m| m.segment.start())
-        .map(|p| Point::new(p.x + 12.0 * rng.f64() - 6.0, p.y + 12.0 * rng.f64() - 6.0))
-        .collect();
+    let mut near = || {
+        let p = f.moves.get(rng.usize(..f.moves.len())).map_or(Point::ZERO, |m| m.segment.start());
+        Point::new(p.x + 12.0 * rng.f64() - 6.0, p.y + 12.0 * rng.f64() - 6.0)
+    };
+    let points: Vec<Point> = (0..10_000).map(|_| near()).collect();
     bencher.bench(|| points.iter().filter_map(|&p| clearance.at(p)).map(|c| c.clearance).sum::<f64>());
 }
 

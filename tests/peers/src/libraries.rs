@@ -48,10 +48,9 @@ fn ours(path: &Path) -> Option<Finish> {
     use sweptedge::program::MoveIndex;
     use sweptedge::view::{DiscFamily, DiscMove};
     let points = closed_points(path);
-    let moves = (0u32..).zip(points.windows(2)).map(|(i, w)| DiscMove {
-        segment: Segment::line(Point::new(w[0][0], w[0][1]), Point::new(w[1][0], w[1][1])),
-        radius: RADIUS,
-        source: MoveIndex(i),
+    let moves = (0u32..).zip(points.windows(2)).map(|(i, w)| {
+        let line = Segment::line(Point::new(w[0][0], w[0][1]), Point::new(w[1][0], w[1][1]));
+        DiscMove::constant(line, RADIUS, MoveIndex(i))
     });
     let region = sweptedge::envelope::sweep(&DiscFamily { moves: moves.collect() }).ok()?;
     Some(Box::new(move || Found { loops: region.loops.len(), pieces: region.pieces().count(), area: region.area() }))

@@ -1,11 +1,15 @@
 //! No job file may make its reader panic, and no refusal may be without an error and a cure: 100,000
 //! mutations of eight small jobs, from a fixed start, so that a failure repeats.
 
+mod mutation;
+
 use std::panic::{AssertUnwindSafe, catch_unwind};
 use std::time::{Duration, Instant};
 
 use sweptedge::cli::job_problems;
 use sweptedge::input::{Problem, Severity};
+
+use mutation::mutated;
 
 const CASES: usize = 100_000;
 
@@ -28,35 +32,6 @@ const CORPUS: [&str; 8] = [
 /// Bytes that jobs are made of, and some that they are not.
 const BYTES: &[u8] = b"abcdeilnoprstuwx_.-+0123456789=[]{}\"'#,\\ \t\r\n\0\x80\xC3\xA4\xFF\x1A:TZ";
 
-fn mutate(rng: &mut fastrand::Rng) -> Vec<u8> {
-    let mut text = CORPUS[rng.usize(..CORPUS.len())].as_bytes().to_vec();
-    for _ in 0..rng.usize(1..=2) {
-        let at = rng.usize(..=text.len());
-        let to = (at + rng.usize(..=12)).min(text.len());
-        match rng.u8(..7) {
-            0 => text.insert(at, BYTES[rng.usize(..BYTES.len())]),
-            1 => drop(text.drain(at..to)),
-            2 if at < text.len() => text[at] = BYTES[rng.usize(..BYTES.len())],
-            3 => {
-                let copy = text[at..to].to_vec();
-                let into = rng.usize(..=text.len());
-                drop(text.splice(into..into, copy));
-            }
-            4 => text.truncate(at),
-            5 => {
-                let other = CORPUS[rng.usize(..CORPUS.len())].as_bytes();
-                let lines: Vec<&[u8]> = other.split(|b| *b == b'\n').collect();
-                let line = lines[rng.usize(..lines.len())];
-                drop(text.splice(at..at, line.iter().copied().chain(*b"\n")));
-            }
-            _ => drop(
-                text.splice(at..at, std::iter::repeat_n(BYTES[rng.usize(..BYTES.len())], rng.usize(..40))),
-            ),
-        }
-    }
-    text
-}
-
 fn assert_sound(problems: &[Problem], text: &[u8]) {
     for p in problems {
         let said = String::from_utf8_lossy(text);
@@ -74,7 +49,7 @@ fn no_mutated_job_panics_or_is_refused_without_a_cure() {
     let (mut whole, mut refused) = (0, 0);
     let mut slowest = Duration::ZERO;
     for case in 0..CASES {
-        let text = mutate(&mut rng);
+        let text = mutated(&mut rng, &CORPUS, BYTES, 2);
         let begun = Instant::now();
         let judged = catch_unwind(AssertUnwindSafe(|| job_problems(&text, "job.toml")));
         slowest = slowest.max(begun.elapsed());

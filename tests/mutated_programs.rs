@@ -1,11 +1,15 @@
 //! No program text may make the reader panic, and no refusal may be without a placed error and a cure:
 //! 100,000 mutations of ten small programs, from a fixed start, so that a failure repeats.
 
+mod mutation;
+
 use std::panic::{AssertUnwindSafe, catch_unwind};
 
 use sweptedge::input::Severity;
 use sweptedge::input::program::{ProgramOptions, read_iso};
 use sweptedge::program::Unit;
+
+use mutation::mutated;
 
 const CASES: usize = 100_000;
 
@@ -26,33 +30,6 @@ const CORPUS: [&str; 10] = [
 
 /// Bytes that programs are made of, and some that they are not.
 const BYTES: &[u8] = b"GXYZIJKRFSTMNOPQLABCDEHUVW0123456789.+-,/%()[];#=* \t\r\n\0\x80\xC3\xA4\xFF\x1Ae";
-
-fn mutate(rng: &mut fastrand::Rng) -> Vec<u8> {
-    let mut text = CORPUS[rng.usize(..CORPUS.len())].as_bytes().to_vec();
-    for _ in 0..rng.usize(1..=4) {
-        let at = rng.usize(..=text.len());
-        let to = (at + rng.usize(..=12)).min(text.len());
-        match rng.u8(..7) {
-            0 => text.insert(at, BYTES[rng.usize(..BYTES.len())]),
-            1 => drop(text.drain(at..to)),
-            2 if at < text.len() => text[at] = BYTES[rng.usize(..BYTES.len())],
-            3 => {
-                let copy = text[at..to].to_vec();
-                let into = rng.usize(..=text.len());
-                drop(text.splice(into..into, copy));
-            }
-            4 => text.truncate(at),
-            5 => {
-                let other = CORPUS[rng.usize(..CORPUS.len())].as_bytes();
-                let lines: Vec<&[u8]> = other.split(|b| *b == b'\n').collect();
-                let line = lines[rng.usize(..lines.len())];
-                drop(text.splice(at..at, line.iter().copied()));
-            }
-            _ => text.extend(std::iter::repeat_n(b'9', rng.usize(..40))),
-        }
-    }
-    text
-}
 
 fn options(rng: &mut fastrand::Rng) -> ProgramOptions {
     let unit = |n: u8| [None, Some(Unit::Inch), Some(Unit::Millimetre)][usize::from(n % 3)];
@@ -103,7 +80,7 @@ fn a_hundred_thousand_mutated_programs_never_panic() {
     let mut rng = fastrand::Rng::with_seed(6556);
     let mut read = 0;
     for case in 0..CASES {
-        let (text, options) = (mutate(&mut rng), options(&mut rng));
+        let (text, options) = (mutated(&mut rng, &CORPUS, BYTES, 3), options(&mut rng));
         match catch_unwind(AssertUnwindSafe(|| judge(&text, &options))) {
             Ok(was_read) => read += usize::from(was_read),
             Err(_) => panic!("case {case}: {options:?}\nlet text = b\"{}\";", text.escape_ascii()),

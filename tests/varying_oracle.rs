@@ -8,7 +8,7 @@
 
 mod oracle;
 
-use oracle::{Rng, moves_as_source, random_taper, reduced_moves, sampled_clearance, winding};
+use oracle::{Rng, moves_as_source, random_taper, reduced, sampled_clearance, winding};
 use sweptedge::envelope::sweep;
 use sweptedge::geometry::{Affine, Point};
 use sweptedge::view::{DiscFamily, DiscMove};
@@ -51,7 +51,7 @@ fn judge_all(make: impl Fn(u64, &mut Rng) -> Vec<DiscMove>) {
     }
     if let Some((case, why)) = failures.first() {
         let moves = make(*case, &mut Rng::with_seed(*case));
-        let moves = reduced_moves(&moves, |m| judge(m, &mut Rng::with_seed(*case), 200).is_err());
+        let moves = reduced(&moves, |m| judge(m, &mut Rng::with_seed(*case), 200).is_err());
         let list: Vec<_> = failures.iter().take(40).map(|f| format!("{}: {}", f.0, f.1)).collect();
         let count = failures.len();
         panic!("{count} failed\n{}\ncase {case}: {why}\n{}", list.join("\n"), moves_as_source(&moves));

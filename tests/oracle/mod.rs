@@ -139,7 +139,7 @@ pub fn noisy_path(rng: &mut Rng, lattice: bool, noise: f64) -> (Vec<Segment>, f6
 }
 
 /// The fewest moves of a path that still fail, found by leaving out ever smaller runs of them.
-pub fn reduced(path: &[Segment], fails: impl Fn(&[Segment]) -> bool) -> Vec<Segment> {
+pub fn reduced<T: Clone>(path: &[T], fails: impl Fn(&[T]) -> bool) -> Vec<T> {
     let mut best = path.to_vec();
     let mut run = best.len() / 2;
     while run > 0 {
@@ -260,26 +260,6 @@ pub fn random_taper(rng: &mut Rng, lattice: bool, noise: f64) -> Vec<DiscMove> {
         moves.push(next);
     }
     moves
-}
-
-/// The fewest moves that still fail.
-pub fn reduced_moves(moves: &[DiscMove], fails: impl Fn(&[DiscMove]) -> bool) -> Vec<DiscMove> {
-    let mut best = moves.to_vec();
-    let mut run = best.len() / 2;
-    while run > 0 {
-        let mut at = 0;
-        while at < best.len() {
-            let mut without = best.clone();
-            without.drain(at..(at + run).min(best.len()));
-            if !without.is_empty() && fails(&without) {
-                best = without;
-            } else {
-                at += run;
-            }
-        }
-        run /= 2;
-    }
-    best
 }
 
 /// Straight moves of varying radius as Rust source, every digit kept.

@@ -150,7 +150,9 @@ impl Rule {
         } else {
             format!("give {name} as {expected}")
         };
-        Some(Problem::error(place.clone(), format!("{name} is {value}"), expected, help))
+        // Hundreds of digits help nobody to find the slip.
+        let shown = if value.abs() > GREATEST_COORDINATE { format!("{value:e}") } else { value.to_string() };
+        Some(Problem::error(place.clone(), format!("{name} is {shown}"), expected, help))
     }
 }
 
